@@ -1,0 +1,14 @@
+"""One file per command."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+COMMANDS: Mapping[str, tuple[str, str]] = {
+    "new": ("new", "new"),
+    "import": ("import_", "import_points"),
+    "check": ("check", "check"),
+    "sweep": ("sweep", "sweep"),
+    "schema": ("schema", "schema"),
+}
+"""Each command: its module here and the function in it; ``toewright --help`` lists them in this order."""
