@@ -1,0 +1,62 @@
+"""toewright: steering and suspension geometry from hardpoints.
+
+    import toewright as tw
+    axle = tw.load("hardpoints/marten_front.toml")
+    maps = tw.sweep(axle, rack=[-20, 0, 20], travel=[-25, 0, 25])
+    maps["bump_steer"]          # (side, rack_travel, wheel_travel), deg, toe-in +
+
+Axes are ISO 8855 (x forward, y left, z up), lengths mm, angles deg. Names are loaded when first used.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from toewright.kinematics.maps import CornerMaps, Stop
+    from toewright.kinematics.slopes import Slopes, slopes
+    from toewright.kinematics.sweep import design_pose, sweep
+    from toewright.model.axle import Axle, Corner
+    from toewright.model.errors import InputError
+    from toewright.model.files import load, loads
+
+__version__ = "0.1.0"
+
+_HOMES = {
+    "Axle": "toewright.model.axle",
+    "Corner": "toewright.model.axle",
+    "CornerMaps": "toewright.kinematics.maps",
+    "InputError": "toewright.model.errors",
+    "Slopes": "toewright.kinematics.slopes",
+    "Stop": "toewright.kinematics.maps",
+    "design_pose": "toewright.kinematics.sweep",
+    "load": "toewright.model.files",
+    "loads": "toewright.model.files",
+    "slopes": "toewright.kinematics.slopes",
+    "sweep": "toewright.kinematics.sweep",
+}
+
+__all__ = [
+    "Axle",
+    "Corner",
+    "CornerMaps",
+    "InputError",
+    "Slopes",
+    "Stop",
+    "design_pose",
+    "load",
+    "loads",
+    "slopes",
+    "sweep",
+]
+
+
+def __getattr__(name: str) -> Any:
+    if name not in _HOMES:
+        raise AttributeError(f"module 'toewright' has no attribute {name!r}")
+    return getattr(import_module(_HOMES[name]), name)
+
+
+def __dir__() -> list[str]:
+    return sorted([*globals(), *_HOMES])

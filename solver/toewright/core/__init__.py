@@ -1,0 +1,1 @@
+"""Compiled kernels on plain arrays; units and validation stop one layer above."""

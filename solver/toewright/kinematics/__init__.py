@@ -1,0 +1,1 @@
+"""Corner and axle solves with their results."""

@@ -1,0 +1,1 @@
+"""Studies on many designs: what a change of a hardpoint does."""
