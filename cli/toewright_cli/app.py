@@ -17,6 +17,7 @@ import typer
 from typer.core import TyperGroup
 
 from toewright_cli.commands import COMMANDS
+from toewright_cli.console import complain
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -81,11 +82,6 @@ def _root(
     """Steering and suspension geometry from hardpoints: what the wheels do over rack and wheel travel, and why."""
     if context.invoked_subcommand is None:
         sys.stdout.write(context.get_help().rstrip() + "\n")
-
-
-def complain(sentence: str) -> None:
-    """Say on stderr, in one line, what was wrong."""
-    sys.stderr.write(f"toewright: {' '.join(sentence.split())}\n")
 
 
 def _usage_sentence(error: typer.TyperException) -> str:

@@ -1,40 +1,89 @@
-"""Where text goes: results to stdout, progress and warnings to stderr. NO_COLOR is respected (rich does)."""
+"""Where text goes, and the one style of tables: results to stdout, progress and warnings to stderr; NO_COLOR is respected (by rich)."""
 
 from __future__ import annotations
 
 import json
+import math
+import os
 import sys
-from collections.abc import Sequence
-from typing import Any
+from collections.abc import Mapping, Sequence
+from typing import Any, TextIO
 
 from rich import box
 from rich.console import Console
 from rich.table import Table
+from rich.text import Text
 
 PIPED_WIDTH = 100
-"""Columns when the output is no terminal."""
+"""Columns when the output is no terminal and COLUMNS is not set."""
+
+Cell = str | Text
+
+
+def _console(stream: TextIO, stderr: bool) -> Console:
+    known = stream.isatty() or "COLUMNS" in os.environ
+    return Console(stderr=stderr, highlight=False, markup=False, width=None if known else PIPED_WIDTH)
 
 
 def out() -> Console:
     """Console for results."""
-    return Console(highlight=False, width=None if sys.stdout.isatty() else PIPED_WIDTH)
+    return _console(sys.stdout, False)
 
 
 def err() -> Console:
     """Console for progress and warnings."""
-    return Console(stderr=True, highlight=False, width=None if sys.stderr.isatty() else PIPED_WIDTH)
+    return _console(sys.stderr, True)
 
 
-def table(columns: Sequence[str], rows: Sequence[Sequence[str]], *, title: str = "", left: int = 1) -> Table:
-    """A table in the one style of the tool: the first ``left`` columns flush left, numbers flush right."""
-    made = Table(
-        box=box.SIMPLE_HEAD, title=title or None, title_justify="left", title_style="bold", header_style="bold"
-    )
+def say(text: str, *, style: str = "") -> None:
+    """A sentence on stdout: wrapped between words on a terminal, one line when piped."""
+    console = out()
+    console.print(Text(text, style=style), soft_wrap=not console.is_terminal)
+
+
+def warn(text: str) -> None:
+    """A remark or a notice on stderr."""
+    console = err()
+    console.print(Text(text), soft_wrap=not console.is_terminal)
+
+
+def complain(sentence: str) -> None:
+    """Say on stderr, in one line, what was wrong."""
+    sys.stderr.write(f"toewright: {' '.join(sentence.split())}\n")
+
+
+def table(columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequence[int] = ()) -> Table:
+    """A table in the one style of the tool.
+
+    Args:
+        columns: headings.
+        rows: cells; an empty row draws a line.
+        right: numbers of the columns that are flush right; the others are flush left.
+    """
+    made = Table(box=box.SIMPLE_HEAD, header_style="bold", padding=(0, 1), pad_edge=True, show_edge=True)
     for number, name in enumerate(columns):
-        made.add_column(name, justify="left" if number < left else "right", overflow="fold")
+        made.add_column(
+            Text(name), justify="right" if number in right else "left", vertical="top", no_wrap=number in right
+        )
     for row in rows:
-        made.add_row(*row)
+        if row:
+            made.add_row(*row)
+        else:
+            made.add_section()
     return made
+
+
+def print_table(columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequence[int] = ()) -> None:
+    """Print ``table`` to stdout without spaces at the ends of lines."""
+    console = out()
+    with console.capture() as captured:
+        console.print(table(columns, rows, right=right))
+    lines = [line.rstrip() for line in captured.get().splitlines()]
+    while lines and not lines[0]:
+        lines.pop(0)
+    while lines and not lines[-1]:
+        lines.pop()
+    sys.stdout.write("\n".join(lines) + "\n")
 
 
 def print_json(value: Any) -> None:
@@ -43,33 +92,31 @@ def print_json(value: Any) -> None:
 
 
 def finite(value: Any) -> Any:
-    """Plain lists and numbers for JSON, null for what is not finite."""
+    """Plain lists and numbers for JSON, null for what is not finite; arrays may be numpy's."""
     if hasattr(value, "tolist"):
         value = value.tolist()
-    if isinstance(value, dict):
+    if isinstance(value, Mapping):
         return {str(k): finite(v) for k, v in value.items()}
     if isinstance(value, list | tuple):
         return [finite(v) for v in value]
-    if isinstance(value, float) and not (value == value and abs(value) != float("inf")):
+    if isinstance(value, float) and not math.isfinite(value):
         return None
     return value
 
 
 def print_definitions(names: Sequence[str]) -> None:
-    """The ``--explain`` table: definitions of the figures shown, from the glossary."""
+    """What ``--explain`` adds: definitions of the figures shown, from the glossary."""
     from toewright.model.glossary import explain
 
-    made = Table(
-        box=box.SIMPLE_HEAD, title="Definitions", title_justify="left", title_style="bold", header_style="bold"
-    )
-    for name in ("figure", "unit", "sign", "definition"):
-        made.add_column(name, overflow="fold")
-    for row in explain(names):
-        made.add_row(*row)
-    out().print(made)
+    say("\nDefinitions (ISO 8855 axes: x forward, y left, z up; s = +1 left, -1 right)", style="bold")
+    rows = [
+        (label, f"{definition}{f'; {sign}' if sign else ''} [{unit}]" if unit != "-" else definition)
+        for label, unit, sign, definition in explain(names)
+    ]
+    print_table(["figure", "definition; sign [unit]"], rows)
 
 
 def print_remarks(remarks: Sequence[str]) -> None:
     """Remarks on the input, to stderr."""
     for remark in remarks:
-        err().print(f"remark: {remark}", markup=False, soft_wrap=True)
+        warn(f"remark: {remark}")

@@ -4,26 +4,43 @@ from __future__ import annotations
 
 import math
 from enum import StrEnum
+from itertools import pairwise
 from pathlib import Path
-from typing import Annotated
+from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-LIST_HELP = "lo:hi:n (n values from lo to hi) or values separated by commas, ascending, mm"
+if TYPE_CHECKING:
+    from toewright.model.axle import Axle
+
+LIST_HELP = "lo:hi:n (n values from lo to hi) or values separated by commas, ascending"
+
+LARGEST_COUNT = 100_001
+"""Values in one LIST."""
+
+LARGEST_VALUE = 2000.0
+"""No car has a travel (mm) or an angle (deg) beyond this."""
 
 HardpointFile = Annotated[Path, typer.Argument(metavar="FILE", help="Hardpoint file (.toml).", show_default=False)]
 RackList = Annotated[
     str | None,
     typer.Option(
-        "--rack", metavar="LIST", help=f"Rack travel, + to the left: {LIST_HELP}. Default: 21 over the stroke."
+        "--rack",
+        metavar="LIST",
+        help=f"Rack travel in mm, + along the rack axis (to the left): {LIST_HELP}. Default: 21 over the stroke.",
     ),
 ]
 TravelList = Annotated[
-    str | None, typer.Option("--travel", metavar="LIST", help=f"Wheel travel, bump +: {LIST_HELP}. Default: 21 values.")
+    str | None,
+    typer.Option(
+        "--travel",
+        metavar="LIST",
+        help=f"Wheel travel in mm, bump +: {LIST_HELP}. Default: 21 over a range usual for the wheel's size.",
+    ),
 ]
 Out = Annotated[
     Path | None,
-    typer.Option("--out", "-o", metavar="FILE", help="Write all results; .csv (long table), .json or .nc (NetCDF)."),
+    typer.Option("--out", "-o", metavar="FILE", help="Write all results: .csv (long table), .json or .nc (NetCDF)."),
 ]
 Force = Annotated[bool, typer.Option("--force", help="Replace an output file that exists.")]
 AsJson = Annotated[bool, typer.Option("--json", help="Print the summary as JSON.")]
@@ -53,8 +70,6 @@ class SideChoice(StrEnum):
 TravelAtOption = Annotated[TravelAt, typer.Option("--travel-at", help="What the wheel travel is the height of.")]
 SideOption = Annotated[SideChoice, typer.Option("--side", help="Which corners.")]
 
-LARGEST_COUNT = 100_001
-
 
 def _number(text: str, option: str, whole: str) -> float:
     from toewright.model.errors import InputError
@@ -65,14 +80,39 @@ def _number(text: str, option: str, whole: str) -> float:
         value = math.nan
     if not math.isfinite(value):
         raise InputError(f"{option} {whole}: {text.strip()!r} is not a number; write {LIST_HELP}")
+    if abs(value) > LARGEST_VALUE:
+        raise InputError(f"{option} {whole}: {value:g} is more than any car has; the limit is {LARGEST_VALUE:g}")
     return value
 
 
+def _evenly(text: str, option: str) -> list[float]:
+    """The values of ``lo:hi:n``."""
+    from toewright.model.errors import InputError
+
+    parts = text.split(":")
+    if len(parts) != 3:
+        raise InputError(f"{option} {text}: has {len(parts)} parts; write lo:hi:n, such as -25:25:11")
+    low, high = _number(parts[0], option, text), _number(parts[1], option, text)
+    written = parts[2].strip()
+    if not written.isdecimal() or len(written) > 6 or not 1 <= int(written) <= LARGEST_COUNT:
+        raise InputError(f"{option} {text}: n is {written!r}; write a whole number from 1 to {LARGEST_COUNT}")
+    count = int(written)
+    if count == 1 and low == high:
+        return [low]
+    if count == 1:
+        raise InputError(f"{option} {text}: one value can't span {low:g} to {high:g}; write n = 2 or more")
+    if low >= high:
+        raise InputError(f"{option} {text}: {low:g} to {high:g} does not ascend; write the lower value first")
+    values = [low + (high - low) * i / (count - 1) for i in range(count - 1)] + [high]
+    return [0.0 if abs(v) < 1e-12 * (high - low) else v for v in values]
+
+
 def parse_list(text: str | None, option: str) -> list[float] | None:
-    """Positions from a LIST: ``lo:hi:n`` or values separated by commas.
+    """Positions from a LIST: ``lo:hi:n`` or values separated by commas; None stays None.
 
     Raises:
-        InputError: if it is empty, not numbers, does not ascend, or n is no whole number from 1 up.
+        InputError: if it is empty, has something that is no number or is out of all proportion, does not ascend, or n is no
+            whole number from 1 up.
     """
     from toewright.model.errors import InputError
 
@@ -80,26 +120,26 @@ def parse_list(text: str | None, option: str) -> list[float] | None:
         return None
     if not text.strip():
         raise InputError(f"{option}: the list is empty; write {LIST_HELP}")
-    if ":" in text:
-        parts = text.split(":")
-        if len(parts) != 3:
-            raise InputError(f"{option} {text}: has {len(parts)} parts; write lo:hi:n, such as -25:25:11")
-        low, high = _number(parts[0], option, text), _number(parts[1], option, text)
-        if not parts[2].strip().isdigit() or not 1 <= int(parts[2]) <= LARGEST_COUNT:
-            raise InputError(
-                f"{option} {text}: n is {parts[2].strip()!r}; write a whole number from 1 to {LARGEST_COUNT}"
-            )
-        count = int(parts[2])
-        if count == 1 and low != high:
-            raise InputError(f"{option} {text}: one value can't span {low:g} to {high:g}; write n = 2 or more")
-        if count > 1 and low >= high:
-            raise InputError(f"{option} {text}: {low:g} to {high:g} does not ascend; write the lower value first")
-        values = [low + (high - low) * i / (count - 1) for i in range(count)] if count > 1 else [low]
-        return [0.0 if abs(v) < 1e-12 * max(abs(low), abs(high)) else v for v in values]
-    values = [_number(part, option, text) for part in text.split(",")]
-    for before, after in zip(values, values[1:], strict=False):
+    values = _evenly(text, option) if ":" in text else [_number(part, option, text) for part in text.split(",")]
+    for before, after in pairwise(values):
         if after <= before:
             raise InputError(
                 f"{option} {text}: {after:g} after {before:g} does not ascend; write the values in rising order"
             )
+    return values
+
+
+def parse_rack(text: str | None, axle: Axle) -> list[float] | None:
+    """The LIST of ``--rack`` for an axle; an axle without a rack takes 0 only.
+
+    Raises:
+        InputError: as ``parse_list``, and for rack travel on an axle that has no rack.
+    """
+    from toewright.model.errors import InputError
+
+    values = parse_list(text, "--rack")
+    if values is not None and axle.rack is None and any(values):
+        raise InputError(
+            f"{axle.path}: has no [rack], so --rack {text} means nothing; leave --rack out, or add a [rack] table"
+        )
     return values

@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import time
-from collections.abc import Iterator
+import threading
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 
-from toewright_cli.console import err
+from toewright_cli.console import err, warn
 
 PATIENCE = 1.0
 """Seconds of silence before progress is shown."""
@@ -19,45 +19,39 @@ def notice_compilation() -> None:
     from toewright.kinematics.cache import kernels_cached
 
     if not kernels_cached():
-        err().print(COMPILE_NOTICE, markup=False, soft_wrap=True)
-
-
-class Ticker:
-    """Counts steps of a long piece of work and shows them after PATIENCE seconds."""
-
-    def __init__(self, what: str, total: int) -> None:
-        self.what, self.total, self.done = what, total, 0
-        self.started = self.shown = time.monotonic()
-        self.visible = False
-
-    def step(self, count: int = 1) -> None:
-        """Count ``count`` more as done."""
-        self.done += count
-        now = time.monotonic()
-        if now - self.started < PATIENCE or now - self.shown < 0.2:
-            return
-        self.shown = now
-        console = err()
-        share = 100 * self.done // max(1, self.total)
-        line = f"{self.what}: {self.done} of {self.total} ({share} %)"
-        if console.is_terminal:
-            self.visible = True
-            console.print(f"\r{line}", end="", markup=False)
-        elif not self.visible or self.done >= self.total:
-            self.visible = True
-            console.print(line, markup=False)
-
-    def close(self) -> None:
-        """End the line."""
-        if self.visible and err().is_terminal:
-            err().print("")
+        warn(COMPILE_NOTICE)
 
 
 @contextmanager
-def ticker(what: str, total: int) -> Iterator[Ticker]:
-    """A Ticker that is closed whatever happens."""
-    made = Ticker(what, total)
+def working(what: str, total: int | None = None) -> Iterator[Callable[[int], None]]:
+    """Show on stderr that work goes on, from PATIENCE seconds on; gone from a terminal when it ends, one line when piped.
+
+    Args:
+        what: the work, such as ``solving 882 positions``.
+        total: number of steps when they are counted; None shows elapsed time only.
+
+    Yields:
+        A function to call with the number of steps just done.
+    """
+    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeElapsedColumn
+
+    console = err()
+    columns = [TextColumn("{task.description}"), *([] if total is None else [BarColumn(24), MofNCompleteColumn()])]
+    progress = Progress(*columns, TimeElapsedColumn(), console=console, transient=True)
+    task = progress.add_task(what, total=total)
+
+    def show() -> None:
+        if console.is_terminal:
+            progress.start()
+        else:
+            warn(f"{what} ...")
+
+    timer = threading.Timer(PATIENCE, show)
+    timer.daemon = True
+    timer.start()
     try:
-        yield made
+        yield lambda count: progress.advance(task, count)
     finally:
-        made.close()
+        timer.cancel()
+        timer.join()
+        progress.stop()

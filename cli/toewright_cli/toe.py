@@ -24,13 +24,22 @@ class ToeUnit(StrEnum):
     MIN = "min"
 
 
+_DECIMALS = {ToeUnit.DEG: 3, ToeUnit.MM: 2, ToeUnit.IN: 4, ToeUnit.MIN: 1}
+_NAMES = {ToeUnit.DEG: "deg", ToeUnit.MM: "mm", ToeUnit.IN: "inch", ToeUnit.MIN: "min of arc"}
+
 ToeUnitOption = Annotated[
-    ToeUnit, typer.Option("--toe-unit", help="deg, min (of arc), or mm or in (inch) across the rim or --toe-diameter.")
+    ToeUnit | None,
+    typer.Option(
+        "--toe-unit",
+        help="Toe in deg, in min of arc, or in mm or inch across a diameter: the rim's, or --toe-diameter.",
+    ),
 ]
 ToeDiameterOption = Annotated[
     float | None,
     typer.Option(
-        "--toe-diameter", metavar="MM", help="Diameter across which toe in mm or in is measured; default rim_diameter."
+        "--toe-diameter",
+        metavar="MM",
+        help="Diameter across which toe in mm or inch is measured; default: rim_diameter.",
     ),
 ]
 ToeTotalOption = Annotated[bool, typer.Option("--toe-total", help="Toe as the sum of both wheels, not per wheel.")]
@@ -40,75 +49,100 @@ ToeTotalOption = Annotated[bool, typer.Option("--toe-total", help="Toe as the su
 class ToeScale:
     """How to write a toe angle.
 
+    A length is the difference of the distances to the centre plane at the rear and at the front end of the diameter, which is
+    diameter sin(toe) for one wheel.
+
     Attributes:
         unit: the unit.
-        diameter: mm, for mm and in.
-        total: the numbers are the sum of both wheels.
+        diameter: mm, for mm and inch.
+        rim: the diameter is the rim's, from the file.
+        total: numbers are the sum of both wheels; then every method wants both wheels' angles.
     """
 
     unit: ToeUnit
-    diameter: float | None
-    total: bool
+    diameter: float | None = None
+    rim: bool = False
+    total: bool = False
+
+    @property
+    def across(self) -> str:
+        """``across the 254 mm rim``; empty for an angle."""
+        if self.unit not in (ToeUnit.MM, ToeUnit.IN) or self.diameter is None:
+            return ""
+        return f"across the {self.diameter:g} mm rim" if self.rim else f"across {self.diameter:g} mm"
+
+    @property
+    def whose(self) -> str:
+        """``per wheel`` or ``total of both wheels``."""
+        return "total of both wheels" if self.total else "per wheel"
 
     @property
     def words(self) -> str:
-        """Unit in words: ``mm across 330 mm, per wheel``."""
-        of = "total of both wheels" if self.total else "per wheel"
+        """Unit in words: ``mm per wheel, across the 254 mm rim``."""
+        return f"{_NAMES[self.unit]} {self.whose}{f', {self.across}' if self.across else ''}"
+
+    def value(self, *degrees: float) -> float:
+        """Toe in this scale, toe-in +: of one wheel, or the sum of the wheels given."""
         if self.unit is ToeUnit.DEG:
-            return f"deg, {of}"
+            return sum(degrees)
         if self.unit is ToeUnit.MIN:
-            return f"minutes of arc, {of}"
-        name = "mm" if self.unit is ToeUnit.MM else "inch"
-        return f"{name} across {self.diameter:g} mm, {of}"
+            return 60.0 * sum(degrees)
+        length = (self.diameter or math.nan) * sum(math.sin(math.radians(angle)) for angle in degrees)
+        return length if self.unit is ToeUnit.MM else length / MM_PER_INCH
 
-    @property
-    def short(self) -> str:
-        """Unit as it stands behind a number."""
-        return {"deg": "deg", "min": "min", "mm": "mm", "in": "inch"}[self.unit.value]
-
-    def value(self, degrees: float) -> float:
-        """A toe angle in this scale, toe-in +."""
-        if self.unit is ToeUnit.DEG:
-            return degrees
-        if self.unit is ToeUnit.MIN:
-            return 60.0 * degrees
-        across = (self.diameter or 0.0) * math.sin(math.radians(degrees))
-        return across if self.unit is ToeUnit.MM else across / MM_PER_INCH
-
-    def cell(self, degrees: float) -> str:
-        """Number and the word in or out, for a table whose heading gives the unit."""
-        if not math.isfinite(degrees):
-            return "-"
-        places = {ToeUnit.DEG: 3, ToeUnit.MM: 2, ToeUnit.IN: 4, ToeUnit.MIN: 1}[self.unit]
-        number = f"{abs(self.value(degrees)):.{places}f}"
+    def _parts(self, degrees: tuple[float, ...]) -> tuple[str, str]:
+        value = self.value(*degrees)
+        number = f"{abs(value):.{_DECIMALS[self.unit]}f}"
         if float(number) == 0.0:
-            return f"{number}    "
-        return f"{number} {'in ' if degrees > 0 else 'out'}"
+            return number, ""
+        return number, "in" if value > 0 else "out"
 
-    def text(self, degrees: float) -> str:
-        """Number, unit and direction: ``0.12 deg toe-out per wheel``."""
-        if not math.isfinite(degrees):
+    def cell(self, *degrees: float) -> str:
+        """Number and direction for a table whose heading gives the unit: ``0.123 in``; ``-`` where there is none.
+
+        In inches the direction is written ``toe-in`` and ``toe-out``, since "in" would read as the unit.
+        """
+        if not math.isfinite(self.value(*degrees)):
+            return "-"
+        number, word = self._parts(degrees)
+        prefix = "toe-" if self.unit is ToeUnit.IN else ""
+        width = len(prefix) + len("out")
+        return f"{number} {f'{prefix}{word}' if word else '':<{width}}"
+
+    def text(self, *degrees: float) -> str:
+        """Number, direction and unit in full: ``0.12 mm toe-out per wheel across the 254 mm rim``."""
+        if not math.isfinite(self.value(*degrees)):
             return "unknown"
-        cell = self.cell(degrees).split()
-        word = {"in": "toe-in", "out": "toe-out"}[cell[1]] if len(cell) > 1 else "toe change"
-        of = "total of both wheels" if self.total else "per wheel"
-        across = f" across {self.diameter:g} mm" if self.unit in (ToeUnit.MM, ToeUnit.IN) else ""
-        return f"{cell[0]} {self.short}{across} {word} {of}"
+        number, word = self._parts(degrees)
+        pieces = [number, _NAMES[self.unit], f"toe-{word}" if word else "toe", self.whose, self.across]
+        return " ".join(piece for piece in pieces if piece)
 
 
 def toe_scale(axle: Axle, unit: ToeUnit, diameter: float | None, total: bool) -> ToeScale:
     """The scale asked for; the diameter from the file unless given.
 
     Raises:
-        InputError: for mm or in when neither the file nor the option gives a diameter, or one that is not positive.
+        InputError: for mm or inch when neither the file nor the option gives a diameter, or one that is not positive.
     """
     from toewright.model.errors import InputError
 
     if diameter is not None and not (math.isfinite(diameter) and diameter > 0.0):
         raise InputError(f"--toe-diameter {diameter:g}: must be a length above 0 mm")
-    across = diameter if diameter is not None else axle.wheel.rim_diameter
+    across = axle.wheel.rim_diameter if diameter is None else diameter
     if unit in (ToeUnit.MM, ToeUnit.IN) and across is None:
         raise InputError(
-            f"--toe-unit {unit.value}: across which diameter? {axle.path}: wheel.rim_diameter is missing; add it, or give --toe-diameter MM"
+            f"{axle.path}: wheel.rim_diameter is missing, so --toe-unit {unit.value} has no diameter to be measured across; "
+            "add it, or give --toe-diameter MM"
         )
-    return ToeScale(unit, across, total)
+    return ToeScale(unit, across, diameter is None, total)
+
+
+def workshop_scale(axle: Axle, unit: ToeUnit | None, diameter: float | None, total: bool) -> ToeScale:
+    """The scale of a workshop's figures: what was asked for, else mm across the diameter that is known, else minutes of arc.
+
+    Raises:
+        InputError: as ``toe_scale``.
+    """
+    if unit is None:
+        unit = ToeUnit.MIN if diameter is None and axle.wheel.rim_diameter is None else ToeUnit.MM
+    return toe_scale(axle, unit, diameter, total)

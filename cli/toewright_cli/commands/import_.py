@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from toewright_cli.commands.new import Starter
-from toewright_cli.console import out, table
+from toewright_cli.console import print_table, say
 from toewright_cli.options import Force
 from toewright_cli.outputs import check_out
 
@@ -144,20 +144,11 @@ def import_points(
     write_text(out_file, text, force=force)
     for reading in readings:
         _show(reading, loaded_radius)
-    console = out()
     if right is None and first.corner.side == "right":
-        console.print(
-            "The right corner was read; the file holds its mirror image as [left] and no [right].",
-            markup=False,
-            soft_wrap=True,
-        )
+        say("The right corner was read; the file holds its mirror image as [left] and no [right].")
     for remark in checked.remarks:
-        console.print(f"remark: {remark}", markup=False, soft_wrap=True)
-    console.print(
-        f"Written: {out_file}. Compare the points with the drawing, then: toewright check {out_file}",
-        markup=False,
-        soft_wrap=True,
-    )
+        say(f"remark: {remark}")
+    say(f"Written: {out_file}. Compare the points with the drawing, then: toewright check {out_file}")
 
 
 def _triple(text: str) -> FloatArray:
@@ -179,15 +170,12 @@ def _triple(text: str) -> FloatArray:
 def _show(reading: Reading, loaded_radius: float) -> None:
     from toewright.model.import_report import sanity_list
 
-    console = out()
     given = "; ".join(reading.concluded)
-    console.print(
+    say(
         f"{reading.corner.side} corner, {reading.corner.kind}: axes {reading.axes.text}, unit {reading.unit}, "
-        f"origin {', '.join(f'{v:g}' for v in reading.origin)} in the table.",
-        markup=False,
-        soft_wrap=True,
+        f"origin {', '.join(f'{v:g}' for v in reading.origin)} in the table."
     )
-    console.print(f"Concluded: {given}." if given else "Nothing had to be concluded.", markup=False, soft_wrap=True)
+    say(f"Concluded: {given}." if given else "Nothing had to be concluded.")
     rows = [
         [name, theirs, *(f"{v:g}" for v in raw), *(f"{v:+.2f}" for v in reading.corner.points[name])]
         for name, (theirs, raw) in reading.sources.items()
@@ -200,14 +188,8 @@ def _show(reading: Reading, loaded_radius: float) -> None:
         "y left (mm)",
         "z up (mm)",
     ]
-    console.print(table(headings, rows, left=2))
+    print_table(headings, rows, right=range(2, 8))
     if reading.unused:
-        console.print(f"Not taken from the table: {', '.join(reading.unused)}.", markup=False, soft_wrap=True)
+        say(f"Not taken from the table: {', '.join(reading.unused)}.")
     checks = sanity_list(reading, loaded_radius)
-    console.print(
-        table(
-            ["sanity list", "found", ""],
-            [[c.what, c.found, "usual" if c.usual else "ODD: check"] for c in checks],
-            left=3,
-        )
-    )
+    print_table(["sanity list", "found", ""], [[c.what, c.found, "usual" if c.usual else "ODD: check"] for c in checks])

@@ -8,7 +8,7 @@ from typing import Annotated
 
 import typer
 
-from toewright_cli.console import out
+from toewright_cli.console import say
 from toewright_cli.options import Force
 
 
@@ -33,8 +33,4 @@ def new(
 
     check_out(out_file, force, (".toml",))
     write_text(out_file, starter_text(kind.value), force=force)
-    out().print(
-        f"{out_file}: a {kind.value} starter. Replace its points with yours, then: toewright check {out_file}",
-        markup=False,
-        soft_wrap=True,
-    )
+    say(f"{out_file}: a {kind.value} starter. Replace its points with yours, then: toewright check {out_file}")

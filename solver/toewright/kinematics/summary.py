@@ -1,4 +1,4 @@
-"""What a designer reads first: bump steer at straight ahead and at both locks, the worst place, ranges, stops."""
+"""What a designer reads first of a map: bump steer, the worst place, ranges; and whether one side tells all."""
 
 from __future__ import annotations
 
@@ -8,10 +8,8 @@ import numpy as np
 
 from toewright.core.types import FloatArray
 from toewright.kinematics.maps import CornerMaps
-from toewright.kinematics.status import OK
-
-ROWS = 11
-"""Wheel-travel rows of the compact table."""
+from toewright.kinematics.status import STATUS_NAMES
+from toewright.model.axle import Axle
 
 RANGED = (
     "steer_angle",
@@ -24,86 +22,151 @@ RANGED = (
 )
 """Quantities whose range over the map is shown."""
 
+SAME = 1e-9
+"""Points and positions (mm) that differ by less are the same."""
+
 
 @dataclass(frozen=True)
 class Place:
-    """A pose and the value of a quantity there."""
+    """A pose and what a quantity is there.
+
+    Attributes:
+        side: "left", "right", or "both" where the quantity is the sum of both wheels.
+        rack_travel, wheel_travel: mm.
+        values: the quantity of each wheel of ``side``, left first.
+    """
 
     side: str
     rack_travel: float
     wheel_travel: float
-    value: float
+    values: tuple[float, ...]
+
+    @property
+    def value(self) -> float:
+        """The value, or the sum of both wheels'."""
+        return sum(self.values)
 
 
 @dataclass(frozen=True)
-class SideSummary:
-    """One corner's map at a glance.
+class BumpSteer:
+    """Bump steer over wheel travel at straight ahead and at both ends of the rack travel.
 
     Attributes:
-        side: "left" or "right".
-        racks: rack positions of the columns (mm): both ends of the request and the position nearest to straight ahead.
-        steer: steer angle at those positions and zero or least wheel travel, deg.
-        travels: wheel-travel rows (mm).
-        bump_steer: (rows, columns) deg, toe-in +; NaN where not ok.
-        worst: where |bump_steer| is largest; None when no pose is ok.
-        ranges: quantity name to the places of its least and greatest value.
+        side: "left", "right", or "both" where the figure is the total of both wheels.
+        racks: (C,) mm, ascending: both ends and the position nearest to straight ahead; all where there are no more than three.
+        travels: (T,) mm, ascending.
+        steer: (C,) steer angle at those rack positions and the travel nearest to zero, deg, to the left +; the mean of both wheels
+            where side is "both".
+        angles: (W, C, T) bump steer of each wheel, deg, toe-in +; NaN where not ok. W is 1, or 2 where side is "both".
+        status: (C, T) words of toewright.kinematics.status; of both wheels the worse one.
+        worst: where its size is largest over the whole map, between the columns too; None where there is none.
+        worst_straight: the same at straight ahead only; None when rack travel 0 was not among the positions.
     """
 
     side: str
     racks: FloatArray
-    steer: FloatArray
     travels: FloatArray
-    bump_steer: FloatArray
+    steer: FloatArray
+    angles: FloatArray
+    status: np.ndarray[tuple[int, ...], np.dtype[np.str_]]
     worst: Place | None
-    ranges: dict[str, tuple[Place, Place]]
+    worst_straight: Place | None
 
 
-def _place(maps: CornerMaps, side: int, flat: int, values: FloatArray) -> Place:
-    i, j = np.unravel_index(flat, values.shape)
-    return Place(maps.sides[side], float(maps.rack_travel[i]), float(maps.wheel_travel[j]), float(values[i, j]))
+@dataclass(frozen=True)
+class Range:
+    """Least and greatest value of a quantity of one corner over the map, and its design value (None when not in the map)."""
+
+    least: Place
+    greatest: Place
+    design: float | None
 
 
-def spread_indices(size: int, count: int, keep: int) -> list[int]:
-    """At most about ``count`` indices of 0..size-1 in even steps from index ``keep`` outward, with both ends among them."""
-    step = max(1, -(-(size - 1) // (count - 1)))
-    return sorted({*range(keep, size, step), *range(keep, -1, -step), 0, size - 1})
+def bump_steer(maps: CornerMaps, *, total: bool = False) -> tuple[BumpSteer, ...]:
+    """Bump steer of each corner of a sweep, or of both wheels together.
 
+    Args:
+        maps: the sweep.
+        total: one result, the total of both wheels.
 
-def summarise(maps: CornerMaps) -> tuple[SideSummary, ...]:
-    """Summary of each corner of a sweep."""
+    Raises:
+        ValueError: if the total is wanted of a sweep of one side.
+    """
+    if total and len(maps.sides) != 2:
+        raise ValueError("the total toe needs both sides; sweep both")
+    groups = [list(range(len(maps.sides)))] if total else [[s] for s in range(len(maps.sides))]
     rack_zero = int(np.argmin(np.abs(maps.rack_travel)))
     travel_zero = int(np.argmin(np.abs(maps.wheel_travel)))
-    columns = sorted({0, rack_zero, maps.rack_travel.size - 1})
-    rows = spread_indices(maps.wheel_travel.size, ROWS, travel_zero)
+    last = maps.rack_travel.size - 1
+    columns = list(range(last + 1)) if last < 3 else sorted({0, rack_zero, last})
+    straight = [rack_zero] if abs(maps.rack_travel[rack_zero]) < SAME else []
     found = []
-    for s, side in enumerate(maps.sides):
-        bump = maps["bump_steer"][s]
-        worst = None
-        ranges: dict[str, tuple[Place, Place]] = {}
-        if np.any(maps.status[s] == OK):
-            worst = _place(maps, s, int(np.nanargmax(np.abs(bump))), bump)
-            for name in RANGED:
-                values = maps[name][s]
-                low, high = int(np.nanargmin(values)), int(np.nanargmax(values))
-                ranges[name] = (_place(maps, s, low, values), _place(maps, s, high, values))
+    for group in groups:
+        side = "both" if total else maps.sides[group[0]]
+        angles = maps["bump_steer"][group]
+        worse = np.max(maps.status[group], axis=0)
         found.append(
-            SideSummary(
+            BumpSteer(
                 side=side,
                 racks=maps.rack_travel[columns],
-                steer=maps["steer_angle"][s][columns, travel_zero],
-                travels=maps.wheel_travel[rows],
-                bump_steer=bump[np.ix_(columns, rows)].T,
-                worst=worst,
-                ranges=ranges,
+                travels=maps.wheel_travel,
+                steer=np.mean(maps["steer_angle"][group][:, columns, travel_zero], axis=0),
+                angles=angles[:, columns],
+                status=np.array(STATUS_NAMES)[worse[columns]],
+                worst=_largest(maps, side, angles, list(range(last + 1))),
+                worst_straight=_largest(maps, side, angles, straight),
             )
         )
     return tuple(found)
 
 
-def mirror_images(maps: CornerMaps, symmetric: bool) -> bool:
-    """True where the right corner's map is the left one's with the rack the other way, so one of them tells all."""
+def _largest(maps: CornerMaps, side: str, angles: FloatArray, racks: list[int]) -> Place | None:
+    size = np.abs(angles[:, racks].sum(axis=0))
+    if not np.any(np.isfinite(size)):
+        return None
+    i, j = (int(k) for k in np.unravel_index(int(np.nanargmax(size)), size.shape))
+    return _place(maps, side, racks[i], j, angles)
+
+
+def _place(maps: CornerMaps, side: str, rack: int, travel: int, values: FloatArray) -> Place:
+    return Place(
+        side,
+        float(maps.rack_travel[rack]),
+        float(maps.wheel_travel[travel]),
+        tuple(float(v) for v in values[:, rack, travel]),
+    )
+
+
+def ranges(maps: CornerMaps, side: str) -> dict[str, Range]:
+    """Range of each quantity of RANGED over one corner's map; empty when no pose is ok."""
+    index = maps.side_index(side)
+    found: dict[str, Range] = {}
+    at_design = [np.flatnonzero(np.abs(axis) < SAME) for axis in (maps.rack_travel, maps.wheel_travel)]
+    for name in RANGED:
+        values = maps[name][index]
+        if not np.any(np.isfinite(values)):
+            continue
+        ends = [np.unravel_index(int(find(values)), values.shape) for find in (np.nanargmin, np.nanargmax)]
+        least, greatest = (_place(maps, side, int(i), int(j), values[np.newaxis]) for i, j in ends)
+        known = all(found_at.size for found_at in at_design)
+        found[name] = Range(least, greatest, float(values[at_design[0][0], at_design[1][0]]) if known else None)
+    return found
+
+
+def mirror_images(axle: Axle) -> bool:
+    """True where the right corner is the left one's mirror image and the rack moves straight across the car."""
+    if axle.left.kind != axle.right.kind:
+        return False
+    if axle.rack is not None and np.any(np.abs(axle.rack.axis[[0, 2]]) > SAME):
+        return False
+    image = axle.left.mirrored().points
+    return all(np.allclose(image[name], point, rtol=0.0, atol=SAME) for name, point in axle.right.points.items())
+
+
+def one_side_tells_all(axle: Axle, maps: CornerMaps) -> bool:
+    """True where the right corner's map is the left one's with the rack the other way."""
     return (
-        symmetric
-        and maps.sides == ("left", "right")
-        and bool(np.allclose(maps.rack_travel, -maps.rack_travel[::-1], rtol=0.0, atol=1e-9))
+        len(maps.sides) == 2
+        and mirror_images(axle)
+        and bool(np.allclose(maps.rack_travel, -maps.rack_travel[::-1], rtol=0.0, atol=SAME))
     )

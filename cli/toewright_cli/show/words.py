@@ -1,0 +1,73 @@
+"""Numbers and places in words, the same in every command."""
+
+from __future__ import annotations
+
+import math
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+    from toewright.model.axle import Axle
+
+SHOWN_RATES = {
+    "bump_steer_rate": ("deg/m", 1000.0, 2),
+    "camber_gain": ("deg/m", 1000.0, 2),
+    "steer_rate": ("deg/mm", 1.0, 4),
+}
+"""Unit, factor from the glossary's unit, and decimals in which people read a rate."""
+
+_UNSIGNED = ("never negative", "90 best")
+
+
+def number(value: float, decimals: int, *, sign: bool = True) -> str:
+    """A number with its sign; zero has none, and what is not finite is a dash."""
+    if not math.isfinite(value):
+        return "-"
+    text = f"{value:+.{decimals}f}" if sign else f"{value:.{decimals}f}"
+    return text if float(text) != 0.0 else text.lstrip("+-")
+
+
+def figure(name: str, value: float) -> tuple[str, str, str]:
+    """Number, unit and sign in words of a glossary quantity, as people read it."""
+    from toewright.model.glossary import quantity
+
+    entry = quantity(name)
+    unit, factor, decimals = SHOWN_RATES.get(name, (entry.unit, 1.0, 2))
+    return number(value * factor, decimals, sign=not entry.sign.startswith(_UNSIGNED)), unit, entry.sign
+
+
+def travel_words(travel: float) -> str:
+    """A wheel travel in words: ``+25 mm (bump)``."""
+    word = " (bump)" if travel > 0 else " (rebound)" if travel < 0 else ""
+    return f"{travel:+g} mm{word}" if travel else "0 mm"
+
+
+def span_words(values: Sequence[float]) -> str:
+    """Positions in words: ``-25 to +25 mm in 21 positions``."""
+    if len(values) == 1:
+        return f"{values[0]:+g} mm" if values[0] else "0 mm"
+    return f"{values[0]:+g} to {values[-1]:+g} mm in {len(values)} positions"
+
+
+def lock_words(steer: float, rack: float, axle: Axle) -> str:
+    """Where the steering stands: ``straight ahead``, ``left lock`` at the end of the stroke, or ``to the left``."""
+    if rack == 0.0 or axle.rack is None:
+        return "straight ahead"
+    if not math.isfinite(steer):
+        return "no pose"
+    side = "left" if steer > 0.0 else "right"
+    at_end = math.isclose(abs(rack), axle.rack.stroke, rel_tol=1e-9)
+    return f"{side} lock" if at_end else f"to the {side}"
+
+
+def axle_words(axle: Axle) -> str:
+    """What an axle is: ``front axle, double-wishbone, rack with 30 mm of stroke each way, wheelbase 1550 mm``."""
+    kinds = " (left) and ".join(dict.fromkeys((axle.left.kind, axle.right.kind)))
+    parts = [f"{axle.vehicle.axle} axle", kinds + (" (right)" if axle.left.kind != axle.right.kind else "")]
+    parts.append(
+        "no rack (toe links)" if axle.rack is None else f"rack with {axle.rack.stroke:g} mm of stroke each way"
+    )
+    if axle.vehicle.wheelbase is not None:
+        parts.append(f"wheelbase {axle.vehicle.wheelbase:g} mm")
+    return ", ".join(parts)
