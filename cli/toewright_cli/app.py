@@ -8,7 +8,7 @@ imported when it is used, and all of them for ``toewright --help``: so import th
 from __future__ import annotations
 
 import difflib
-import os
+import signal
 import sys
 from importlib import import_module
 from typing import TYPE_CHECKING, Annotated, Any
@@ -24,8 +24,6 @@ if TYPE_CHECKING:
 
 BAD_INPUT = 2
 INTERRUPTED = 130
-PIPE_CLOSED = 141
-"""As a shell reports a program that SIGPIPE ended."""
 
 _HELP_OPTIONS = {"help_option_names": ["-h", "--help"]}
 
@@ -85,13 +83,18 @@ def _root(
 
 
 def _usage_sentence(error: typer.TyperException) -> str:
+    """What was wrong with the command line: option, value, what is allowed, and where the help is."""
+    message = " ".join(error.format_message().split()).rstrip(".").replace("Value error, ", "")
+    details = getattr(error.__cause__, "errors", None)
+    given = details()[0].get("input") if details else None
+    if isinstance(given, str) and given not in message:
+        message = f"{message}: got {given!r}"
     context = getattr(error, "ctx", None)
-    message = " ".join(error.format_message().split()).rstrip(".")
     if context is None:
         return message
-    if message.startswith("Missing") and context.command_path:
-        message = f"{context.command_path.removeprefix('toewright ')}: {message[0].lower()}{message[1:]}"
-    return f"{message}; see `{context.command_path} --help`"
+    command = context.command_path.removeprefix("toewright").strip()
+    message = message[0].lower() + message[1:]
+    return f"{f'{command}: ' if command else ''}{message}; see `{context.command_path} --help`"
 
 
 def run(arguments: Sequence[str] | None = None) -> int:
@@ -110,9 +113,6 @@ def run(arguments: Sequence[str] | None = None) -> int:
     except InputError as error:
         complain(str(error))
         return BAD_INPUT
-    except BrokenPipeError:
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        return PIPE_CLOSED
     except OSError as error:
         complain(
             f"{error.filename or 'output'}: {error.strerror or error}; check the name, the rights and the free space"
@@ -126,5 +126,7 @@ def run(arguments: Sequence[str] | None = None) -> int:
 
 
 def main() -> None:
-    """Entry point of the ``toewright`` command."""
+    """Entry point of the ``toewright`` command; a reader that goes away (``| head``) ends it as it ends any filter."""
+    if hasattr(signal, "SIGPIPE"):
+        signal.signal(signal.SIGPIPE, signal.SIG_DFL)
     sys.exit(run())

@@ -60,7 +60,7 @@ def table(columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequ
         rows: cells; an empty row draws a line.
         right: numbers of the columns that are flush right; the others are flush left.
     """
-    made = Table(box=box.SIMPLE_HEAD, header_style="bold", padding=(0, 1), pad_edge=True, show_edge=True)
+    made = Table(box=box.SIMPLE_HEAD, header_style="bold", padding=(0, 1, 0, 0))
     for number, name in enumerate(columns):
         made.add_column(
             Text(name), justify="right" if number in right else "left", vertical="top", no_wrap=number in right
@@ -108,7 +108,11 @@ def print_definitions(names: Sequence[str]) -> None:
     """What ``--explain`` adds: definitions of the figures shown, from the glossary."""
     from toewright.model.glossary import explain
 
-    say("\nDefinitions (ISO 8855 axes: x forward, y left, z up; s = +1 left, -1 right)", style="bold")
+    say("\nDefinitions", style="bold")
+    say(
+        "Axes ISO 8855: x forward, y left, z up. s = +1 on the left, -1 on the right; a wheel spin axis, k steering axis, "
+        "c contact point, g steering axis at ground, h wheel heading, l its left normal."
+    )
     rows = [
         (label, f"{definition}{f'; {sign}' if sign else ''} [{unit}]" if unit != "-" else definition)
         for label, unit, sign, definition in explain(names)

@@ -14,6 +14,7 @@ if TYPE_CHECKING:
     from toewright.model.axle import Axle
 
 LIST_HELP = "lo:hi:n (n values from lo to hi) or values separated by commas, ascending"
+"""The grammar of a LIST, for messages."""
 
 LARGEST_COUNT = 100_001
 """Values in one LIST."""
@@ -27,7 +28,7 @@ RackList = Annotated[
     typer.Option(
         "--rack",
         metavar="LIST",
-        help=f"Rack travel in mm, + along the rack axis (to the left): {LIST_HELP}. Default: 21 over the stroke.",
+        help="Rack travel in mm, + to the left: lo:hi:n, or a,b,c. Default: 21 over the stroke.",
     ),
 ]
 TravelList = Annotated[
@@ -35,7 +36,7 @@ TravelList = Annotated[
     typer.Option(
         "--travel",
         metavar="LIST",
-        help=f"Wheel travel in mm, bump +: {LIST_HELP}. Default: 21 over a range usual for the wheel's size.",
+        help="Wheel travel in mm, bump +: lo:hi:n, or a,b,c. Default: 21 over a range that suits the wheel's size.",
     ),
 ]
 Out = Annotated[

@@ -32,11 +32,12 @@ def check_out(path: Path | None, force: bool, formats: Sequence[str] = FORMATS, 
 
     if path is None:
         return
-    if path.suffix.lower() not in formats:
-        known = " or ".join([", ".join(formats[:-1]), formats[-1]] if len(formats) > 1 else formats)
-        got = f"the extension {path.suffix!r} is unknown" if path.suffix else "there is no extension"
-        raise InputError(f"{option} {path}: {got}; use {known}")
-    check_target(path, force)
+    if path.suffix.lower() in formats or path.is_dir():
+        check_target(path, force)
+        return
+    known = f"{', '.join(formats[:-1])} or {formats[-1]}" if len(formats) > 1 else formats[0]
+    got = f"the extension {path.suffix!r} is unknown" if path.suffix else "there is no extension"
+    raise InputError(f"{option} {path}: {got}; use {known}")
 
 
 def save_results(

@@ -22,7 +22,7 @@ from toewright_cli.outputs import check_out, save_results
 from toewright_cli.progress import notice_compilation, working
 from toewright_cli.toe import ToeDiameterOption, ToeTotalOption, ToeUnit, ToeUnitOption, toe_scale
 
-MOST_POSES = 2_000_000
+MOST_POSES = 1_000_000
 """Poses of one sweep; each takes about a kilobyte while it is worked on."""
 
 

@@ -215,6 +215,7 @@ def _print_ranges(axle: Axle, ranges: dict[str, dict[str, Range]]) -> None:
     from toewright.model.glossary import quantity
 
     signs: dict[str, str] = {}
+    at, where = ("rack/travel", "rack / wheel travel") if axle.rack is not None else ("travel", "wheel travel")
     for side, of_side in ranges.items():
         if not of_side:
             continue
@@ -222,17 +223,16 @@ def _print_ranges(axle: Axle, ranges: dict[str, dict[str, Range]]) -> None:
         for name, found in of_side.items():
             entry = quantity(name)
             signs[entry.label] = entry.sign
-            row = [entry.label, entry.unit, "-" if found.design is None else figure(name, found.design)[0]]
+            row = [f"{entry.label}, {entry.unit}", "-" if found.design is None else figure(name, found.design)[0]]
             for place in (found.least, found.greatest):
-                at = f"{place.rack_travel:+g} / " if axle.rack is not None else ""
-                row += [figure(name, place.value)[0], f"{at}{place.wheel_travel:+g}"]
+                rack = f"{place.rack_travel:+g}/" if axle.rack is not None else ""
+                row += [figure(name, place.value)[0], f"{rack}{place.wheel_travel:+g}"]
             rows.append(row)
         say("")
-        say(f"Over the whole map, {side} wheel", style="bold")
-        at = "at rack / travel\nmm" if axle.rack is not None else "at travel\nmm"
-        print_table(["", "unit", "design", "least", at, "greatest", at], rows, right=range(2, 7))
+        say(f"Over the whole map, {side} wheel; places are {where} in mm", style="bold")
+        print_table(["", "design", "least", at, "greatest", at], rows, right=range(1, 6))
     if signs:
-        say("Signs: " + "; ".join(f"{label} {sign}" for label, sign in signs.items()) + ".")
+        say("Signs: " + "; ".join(f"{label}: {sign}" for label, sign in signs.items()) + ".")
 
 
 def _print_stops(stops: Sequence[Stop], one: bool) -> None:
