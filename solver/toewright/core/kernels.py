@@ -80,6 +80,7 @@ WALK_CONTRACTION = 0.25  # each Newton move must be this much smaller than the o
 WALK_STEP_TOLERANCE = 1e-11  # the last Newton move at a walked pose
 WALK_STRIDE = 0.06  # longest stride
 WALK_SHORTEST = 1e-8  # a shorter stride than this (1e-6 mm) means the path ends here
+NO_GRIP = 1e-9  # rows (scaled to unit gradients) with a smaller determinant at design are dependent: locked where drawn
 LOCKED_GRIP = 1e-3  # below this share of the design determinant the pose counts as locked: its rates mean nothing
 TIE_ROD_SHARE = (
     0.2  # of the largest link force where a path ends: above it the steering locks, below it the arms run out
@@ -538,6 +539,16 @@ def _order_rows(real, packed):
 
 
 @compiled
+def _inverse_det(P, q, lane, det):
+    """1 / determinant at design, the scale of all later ones; NaN where the rows are dependent there."""
+    lever = P[LEVER * q + lane]
+    scaled = det / (lever * lever * lever)
+    for row in range(5):
+        scaled *= P[(ROW_SCALE + row) * q + lane]
+    return 1.0 / det if abs(scaled) > NO_GRIP else math.nan
+
+
+@compiled
 def _pack_block(designs, first, contact, B):
     """Pack LANES designs from ``first`` on into a block, at their design pose; the last design fills what is left."""
     one, real = np.empty(PACKED), np.empty(PACKED)
@@ -552,7 +563,7 @@ def _pack_block(designs, first, contact, B):
         B[X * LANES + k] = 0.0
     _correct(B, 0.0, 0.0, contact, 1.0)
     for lane in range(LANES):  # the determinant at design scales all later ones
-        B[INVERSE_DET * LANES + lane] = 1.0 / B[GRIP * LANES + lane]
+        B[INVERSE_DET * LANES + lane] = _inverse_det(B, np.int64(LANES), lane, B[GRIP * LANES + lane])
         B[GRIP * LANES + lane] = 1.0
 
 
@@ -686,6 +697,9 @@ def _block_grid(
     origin, state = np.empty(size), np.empty(size)
     _correct(B, 0.0, 0.0, contact, 1.0)
     _copy(B, X * LANES, origin, 0, size)
+    for lane in range(LANES):
+        if math.isnan(B[INVERSE_DET * LANES + lane]):
+            origin[lane] = math.nan
     for i in range(rack.size):
         if rack[i] == 0.0:
             _copy(origin, 0, starts[i], 0, 6 * LANES)
@@ -958,6 +972,8 @@ def _leg(P, x, at, along_rack, target, contact, a, trial):
 
     Returns (reached, Newton iterations of the last stride). Where it returns False, at tells how far it came.
     """
+    if math.isnan(P[INVERSE_DET]):
+        return False, 0
     lever = P[LEVER]
     which = 0 if along_rack > 0.5 else 1
     longest = WALK_STRIDE * lever
@@ -1019,8 +1035,8 @@ def _begin(designs, n, contact, P, x, at, a):
     for k in range(6):
         x[k] = 0.0
     _system(P, x, 0.0, 0.0, contact, a)
-    P[INVERSE_DET] = 1.0 / _eliminate(a)
-    at[0], at[1], at[2] = 0.0, 0.0, 1.0
+    P[INVERSE_DET] = _inverse_det(P, np.int64(1), np.int64(0), _eliminate(a))
+    at[0], at[1], at[2] = 0.0, 0.0, 0.0 if math.isnan(P[INVERSE_DET]) else 1.0
 
 
 @compiled
@@ -1031,6 +1047,8 @@ def _why(P, x, at, contact, a):
     share of the tie rod's force the steering is at its toggle; without it the arms are stretched out.
     """
     _system(P, x, at[0], at[1], contact, a)
+    if math.isnan(P[INVERSE_DET]):
+        return STATUS_LOCKED
     t = np.zeros((5, 8))
     for i in range(5):
         for j in range(5):
@@ -1145,8 +1163,12 @@ def walk_grid(
     row_iterations, row_ends = np.zeros(R, np.int64), np.empty((R, 2))
     for w in range(which.size):
         n = which[w]
+        _begin(designs, n, contact, P, x, at, a)
         for i in range(R):
-            row_status[i] = STATUS_OK if rack[i] == 0.0 else STATUS_OUT_OF_REACH
+            row_status[i] = STATUS_OUT_OF_REACH
+            if rack[i] == 0.0:
+                row_status[i] = STATUS_LOCKED if at[2] < LOCKED_GRIP else STATUS_OK
+                row_ends[i, 0], row_ends[i, 1] = 0.0, 0.0
             for k in range(6):
                 row_poses[i, k] = 0.0
         for way in range(2):
