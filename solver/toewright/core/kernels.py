@@ -734,32 +734,44 @@ def solve_grid(
     starts, start_counts = np.empty((rack.size, 6 * LANES)), np.empty(rack.size, np.int64)
     start_grips = np.empty((rack.size, LANES))
     B = np.zeros(BLOCK * LANES)
+    flat = poses.reshape(-1)
     for first in range(0, designs.shape[0], LANES):
         _pack_block(designs, first, contact, B)
         _block_grid(
             B, rack, rack_line, rack_keep, travel, travel_line, travel_keep, contact,
             nodes, counts, grips, starts, start_counts, start_grips,
         )  # fmt: skip
-        for lane in range(min(LANES, designs.shape[0] - first)):
-            for n in range(count):
+        for n in range(count):
+            for lane in range(min(LANES, designs.shape[0] - first)):
+                at = 6 * ((first + lane) * count + n)
                 iterations[first + lane, n] = counts[n]
                 lost = math.isnan(nodes[n, lane])
                 for k in range(6):
-                    poses[first + lane, n, k] = math.nan if lost else nodes[n, k * LANES + lane]
+                    flat[at + k] = math.nan if lost else nodes[n, k * LANES + lane]
 
 
 # ------------------------------------------------------------------------------------------- measures and derivatives
 
 
-@inline
-def _load_poses(B, poses, m, rack, travel, first, lanes):
-    """Bring pose m of each design of the block into X, RACK_AT and TRAVEL_AT."""
+@compiled
+def _load_poses(B, flat, size, m, rack, travel, first, lanes):
+    """Bring pose m of each design of the block into X, RACK_AT and TRAVEL_AT; flat holds (N, size, 6) poses."""
+    shared = rack.shape[0] == 1 and travel.shape[0] == 1
     for lane in range(LANES):
         design = first + min(lane, lanes - 1)
-        for k in range(5):
-            B[(X + k) * LANES + lane] = poses[design, m, k]
-        B[RACK_AT * LANES + lane] = rack[min(design, rack.shape[0] - 1), m]
-        B[TRAVEL_AT * LANES + lane] = travel[min(design, travel.shape[0] - 1), m]
+        at = 6 * (design * size + m)
+        B[X * LANES + lane] = flat[at]
+        B[(X + 1) * LANES + lane] = flat[at + 1]
+        B[(X + 2) * LANES + lane] = flat[at + 2]
+        B[(X + 3) * LANES + lane] = flat[at + 3]
+        B[(X + 4) * LANES + lane] = flat[at + 4]
+        if not shared:
+            B[RACK_AT * LANES + lane] = rack[min(design, rack.shape[0] - 1), m]
+            B[TRAVEL_AT * LANES + lane] = travel[min(design, travel.shape[0] - 1), m]
+    if shared:
+        for lane in range(LANES):
+            B[RACK_AT * LANES + lane] = rack[0, m]
+            B[TRAVEL_AT * LANES + lane] = travel[0, m]
 
 
 @vectorised
@@ -783,15 +795,19 @@ def _measure_block(B, contact):
 def measure_poses(designs, poses, rack, travel, contact, columns, out):
     """Chosen COLUMNS of given poses: poses (N, M, 6), rack and travel (N or 1, M), columns (C,), out (N, M, C)."""
     B = np.zeros(BLOCK * LANES)
+    flat, target = poses.reshape(-1), out.reshape(-1)
+    M, C = poses.shape[1], columns.size
     for first in range(0, designs.shape[0], LANES):
         _pack_block(designs, first, contact, B)
         lanes = min(LANES, designs.shape[0] - first)
-        for m in range(poses.shape[1]):
-            _load_poses(B, poses, m, rack, travel, first, lanes)
+        for m in range(M):
+            _load_poses(B, flat, poses.shape[1], m, rack, travel, first, lanes)
             _measure_block(B, contact)
-            for lane in range(lanes):
-                for c in range(columns.size):
-                    out[first + lane, m, c] = B[(OUT + columns[c]) * LANES + lane]
+            for c in range(C):
+                source = (OUT + columns[c]) * LANES
+                at = (first * M + m) * C + c
+                for lane in range(lanes):
+                    target[at + lane * M * C] = B[source + lane]
 
 
 @vectorised
@@ -808,6 +824,7 @@ def contract_gradient(designs, poses, rack, travel, contact, weights, out):
     A pose that is NaN makes its design's result NaN.
     """
     B = np.zeros(BLOCK * LANES)
+    flat = poses.reshape(-1)
     one, slopes, varied = np.empty(PACKED), np.empty(38), np.empty(DESIGN, np.complex128)
     packed = np.empty(PACKED, np.complex128)
     for first in range(0, designs.shape[0], LANES):
@@ -816,7 +833,7 @@ def contract_gradient(designs, poses, rack, travel, contact, weights, out):
         for k in range(38 * LANES):
             B[GRADIENT * LANES + k] = 0.0
         for m in range(poses.shape[1]):
-            _load_poses(B, poses, m, rack, travel, first, lanes)
+            _load_poses(B, flat, poses.shape[1], m, rack, travel, first, lanes)
             for lane in range(LANES):
                 design = min(first + min(lane, lanes - 1), weights.shape[0] - 1)
                 for k in range(WEIGHTS):

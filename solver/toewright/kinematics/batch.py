@@ -18,7 +18,7 @@ from toewright.kinematics.lines import Line, grid_line
 
 Scalar = TypeVar("Scalar", bound=np.generic)
 
-CHUNK = 512
+CHUNK = 256
 """Designs per chunk: enough to keep the kernels busy, few enough that the arrays stay small."""
 
 LONGEST_STRIDE = 0.06
