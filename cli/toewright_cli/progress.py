@@ -54,4 +54,5 @@ def working(what: str, total: int | None = None) -> Iterator[Callable[[int], Non
     finally:
         timer.cancel()
         timer.join()
-        progress.stop()
+        if progress.live.is_started:
+            progress.stop()

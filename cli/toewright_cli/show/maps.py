@@ -173,7 +173,7 @@ def _print_bump_steer(axle: Axle, table: BumpSteer, scale: ToeScale) -> None:
         if axle.rack is None:
             headings.append("toe change")
             continue
-        angle = f"steer {number(abs(steer), 1, sign=False)} deg"
+        angle = f"steer {number(abs(steer), 1, sign=False)} deg" if steer == steer else ""
         headings.append(f"rack {number(rack, 1)} mm\n{lock_words(steer, rack, axle)}\n{angle}")
     zero = int(abs(table.travels).argmin())
     rows: list[list[str | Text]] = []
@@ -202,7 +202,7 @@ def _print_worst(axle: Axle, tables: Sequence[BumpSteer], scale: ToeScale, one: 
         return
     place = max(worst, key=lambda spot: abs(spot.value))
     mirrored = ""
-    if one and place.side != "both" and axle.rack is not None:
+    if one and place.side != "both" and place.rack_travel:
         mirrored = f" (and right wheel at rack {number(-place.rack_travel, 1)} mm)"
     say(f"Worst place: {scale.text(*place.values)}: {_place_words(axle, place)}{mirrored}.")
     straight = [table.worst_straight for table in tables if table.worst_straight is not None]
