@@ -18,7 +18,7 @@ class Quantity:
     Attributes:
         name: column name.
         symbol: as in formulas; empty where there is none.
-        unit: "mm", "deg", "deg/mm", "mm/mm", "rad/mm", "%", or "-".
+        unit: "mm", "deg", "deg/mm", "deg/deg", "mm/mm", "rad/mm", "%", or "-".
         label: in words, for tables and axes.
         sign: what a positive number means, in words.
         definition: exact definition, with its source where a standard has it.
@@ -129,6 +129,10 @@ _TABLE = (
     ("toe_in_left", "", "deg", "toe-in, left", "toe-in +", "toe_in of the left wheel"),
     ("toe_in_right", "", "deg", "toe-in, right", "toe-in +", "toe_in of the right wheel"),
     ("axle_steer", "", "deg", "axle steer", "to the left +", "mean steer angle of both wheels less its value at zero travel"),
+    ("axle_steer_rate", "", "deg/mm", "axle-steer rate", "left with bump +", "d axle_steer / d bump, exact; not in roll"),
+    ("roll_steer", "", "deg/deg", "roll steer", "left with roll to the right +", "d axle_steer / d roll_angle on one flat road, exact"),
+    ("camber_gain_left", "", "deg/mm", "camber gain, left", "top outboard with bump +", "camber_gain of the left wheel"),
+    ("camber_gain_right", "", "deg/mm", "camber gain, right", "top outboard with bump +", "camber_gain of the right wheel"),
     ("camber_road_left", "", "deg", "camber to road, left", "top outboard +", "camber of the left wheel against the normal of the road"),
     ("camber_road_right", "", "deg", "camber to road, right", "top outboard +", "camber of the right wheel against the normal of the road"),
     ("track_change", "", "mm", "track change", "wider +", "change of the contact points' distance along the road across the car"),

@@ -1,13 +1,17 @@
-"""After an import: the sanity list, and the hardpoint file that is written."""
+"""After an import: what is usual and what is odd about the points that were read."""
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
 from toewright.model.axle import Corner
 from toewright.model.importing import Reading
+
+STEEP = 20.0
+"""An arm steeper than this (deg) was hardly taken at the design height."""
 
 
 @dataclass(frozen=True)
@@ -19,110 +23,83 @@ class Sanity:
     usual: bool
 
 
-def sanity_list(reading: Reading, loaded_radius: float) -> tuple[Sanity, ...]:
-    """Plausibility of an imported corner; nothing here stops an import."""
-    corner = reading.corner
-    points = corner.points
-    height = float(points["wheel_centre"][2])
-    rod = points["tie_rod_outer"] - points["tie_rod_inner"]
-    slope = float(np.degrees(np.arctan2(rod[2], np.hypot(rod[0], rod[1]))))
-    track = 2.0 * abs(float(points["wheel_centre"][1]))
-    found = [
+def sanity_list(readings: Sequence[Reading], loaded_radius: float) -> tuple[Sanity, ...]:
+    """Plausibility of imported corners, ``loaded_radius`` in mm; nothing here stops an import."""
+    found: list[Sanity] = []
+    for reading in readings:
+        which = f"{reading.corner.side}: " if len(readings) > 1 else ""
+        found += [Sanity(which + row.what, row.found, row.usual) for row in _of_corner(reading, loaded_radius)]
+    if len(readings) == 2:
+        found.append(_centre_plane(readings))
+    return tuple(found)
+
+
+def _of_corner(reading: Reading, loaded_radius: float) -> list[Sanity]:
+    corner, points = reading.corner, reading.corner.points
+    centre, lower = points["wheel_centre"], points["lower_ball_joint"]
+    height, track = float(centre[2]), 2.0 * abs(float(centre[1]))
+    extent = np.ptp(np.array(list(points.values())), axis=0)
+    handed = "left-handed: right only if the table's own axes are" if reading.axes.mirrors else "right-handed"
+    rows = [
         Sanity(
             "wheel centre near its radius above the road",
             f"{height:.1f} mm, radius {loaded_radius:.1f} mm",
             abs(height - loaded_radius) <= 0.1 * loaded_radius,
         ),
         Sanity(
-            "tie rod near the rack's height",
-            f"outer joint {rod[2]:+.1f} mm above the inner one, {slope:+.1f} deg",
-            abs(slope) <= 12.0,
-        ),
-        Sanity(
             f"{corner.side} side at y {'>' if corner.sign > 0 else '<'} 0",
-            f"wheel centre y = {points['wheel_centre'][1]:+.1f} mm",
-            bool(points["wheel_centre"][1] * corner.sign > 0),
+            f"wheel centre y = {centre[1]:+.1f} mm",
+            bool(centre[1] * corner.sign > 0),
         ),
-        Sanity("track of a car", f"{track:.0f} mm between wheel centres", 700.0 <= track <= 2600.0),
-        Sanity("axes right-handed", reading.axes.text, not reading.axes.mirrors),
-        Sanity(
-            "wheel centre outboard of the lower ball joint", f"{_outboard(corner):+.1f} mm", _outboard(corner) > 0.0
-        ),
+        Sanity("track of a car", f"{track:.0f} mm, if y = 0 is the centre plane", 700.0 <= track <= 2600.0),
+        Sanity("size of a corner", " x ".join(f"{v:.0f}" for v in extent) + " mm", 250.0 <= max(extent) <= 1500.0),
+        Sanity("axes of the table", f"{reading.axes.text}, {handed}", not reading.axes.mirrors),
+        *_order(corner),
     ]
     for arm in ("upper", "lower"):
         if f"{arm}_ball_joint" in points:
-            middle = 0.5 * (points[f"{arm}_pivot_front"] + points[f"{arm}_pivot_rear"])
-            run = points[f"{arm}_ball_joint"] - middle
-            angle = float(np.degrees(np.arctan2(run[2], abs(run[1]))))
-            found.append(
-                Sanity(f"{arm} arm not far from level (full droop?)", f"{angle:+.1f} deg outward", abs(angle) <= 20.0)
+            angle = _slope(corner, arm)
+            rows.append(
+                Sanity(f"{arm} arm near level, not at full droop", f"{_tilt(angle)} outward", abs(angle) <= STEEP)
             )
-    return tuple(found)
+    outboard = float((centre[1] - lower[1]) * corner.sign)
+    rows.append(Sanity("wheel centre outboard of the lower ball joint", f"{outboard:+.1f} mm", outboard > 0.0))
+    return rows
 
 
-def _outboard(corner: Corner) -> float:
-    return float((corner.points["wheel_centre"][1] - corner.points["lower_ball_joint"][1]) * corner.sign)
-
-
-def _quoted(text: str) -> str:
-    import json
-
-    return json.dumps(text, ensure_ascii=False)
-
-
-def _point_rows(corner: Corner) -> str:
-    width = max(len(name) for name in corner.points)
-    return "\n".join(
-        f"{name:<{width}} = [{', '.join(_number(v) for v in point)}]" for name, point in corner.points.items()
+def _order(corner: Corner) -> list[Sanity]:
+    """Front ahead of rear, upper above lower, pivots inboard of ball joints, tie rod near the rack's height."""
+    points = corner.points
+    rows = []
+    for arm in ("upper", "lower"):
+        if f"{arm}_ball_joint" in points:
+            front, rear, ball = (points[f"{arm}_{part}"] for part in ("pivot_front", "pivot_rear", "ball_joint"))
+            ahead = float(front[0] - rear[0])
+            rows.append(Sanity(f"{arm} front pivot ahead of the rear one", f"{ahead:+.1f} mm", ahead > 0.0))
+            inside = float(min(abs(ball[1]) - abs(front[1]), abs(ball[1]) - abs(rear[1])))
+            rows.append(Sanity(f"{arm} pivots inboard of the ball joint", f"by {inside:.1f} mm", inside > 0.0))
+    top = "upper_ball_joint" if corner.kind == "double-wishbone" else "strut_top_mount"
+    rise = float(points[top][2] - points["lower_ball_joint"][2])
+    rows.append(Sanity(f"{top.replace('_', ' ')} above the lower ball joint", f"{rise:+.1f} mm", rise > 0.0))
+    rod = points["tie_rod_outer"] - points["tie_rod_inner"]
+    slope = float(np.degrees(np.arctan2(rod[2], np.hypot(rod[0], rod[1]))))
+    rows.append(
+        Sanity("tie rod near the rack's height", f"outer end {rod[2]:+.1f} mm, {_tilt(slope)}", abs(slope) <= 12.0)
     )
+    return rows
 
 
-def _number(value: float) -> str:
-    return repr(round(float(value), 9) + 0.0)
+def _slope(corner: Corner, arm: str) -> float:
+    points = corner.points
+    run = points[f"{arm}_ball_joint"] - 0.5 * (points[f"{arm}_pivot_front"] + points[f"{arm}_pivot_rear"])
+    return float(np.degrees(np.arctan2(run[2], abs(run[1]))))
 
 
-def hardpoint_text(
-    left: Corner,
-    right: Corner | None,
-    *,
-    title: str,
-    source: str,
-    loaded_radius: float,
-    axle: str,
-    wheelbase: float | None,
-    stroke: float | None,
-) -> str:
-    """A hardpoint file from imported corners, mm and ISO 8855; ``right`` None for a mirror image."""
-    parts = [
-        f"# Imported by toewright from {source}: check the points against the drawing before you rely on them.",
-        "# mm; x forward, y left, z up (ISO 8855).",
-        "schema = 1",
-        f"title = {_quoted(title)}",
-        "",
-        "[vehicle]",
-        f'axle = "{axle}"',
-        f"wheelbase = {_number(wheelbase)}"
-        if wheelbase is not None
-        else "# wheelbase = 1550.0     # needed for Ackermann and the turning circle",
-        "",
-        "[wheel]",
-        f"loaded_radius = {_number(loaded_radius)}",
-        "# rim_diameter = 254.0    # toe in mm is measured across it",
-        "",
-        "[setup]                    # static, each wheel: put in what the car has",
-        "toe_in = 0.0               # deg, toe-in +",
-        "camber = 0.0               # deg, top outboard +",
-        "",
-    ]
-    if stroke is not None:
-        parts += ["[rack]", f"stroke = {_number(stroke)}              # mm each way", ""]
-    else:
-        parts += [
-            "# [rack]                   # leave out for toe links",
-            "# stroke = 30.0            # mm each way",
-            "",
-        ]
-    parts += ["[left]", f'type = "{left.kind}"', "[left.points]", _point_rows(left)]
-    if right is not None:
-        parts += ["", "[right]", f'type = "{right.kind}"', "[right.points]", _point_rows(right)]
-    return "\n".join(parts) + "\n"
+def _tilt(angle: float) -> str:
+    return f"{'rising' if angle >= 0.0 else 'falling'} {abs(angle):.1f} deg"
+
+
+def _centre_plane(readings: Sequence[Reading]) -> Sanity:
+    one, other = (reading.corner.points["wheel_centre"] for reading in readings)
+    middle = 0.5 * float(one[1] + other[1])
+    return Sanity("centre plane midway between the wheels", f"midway is y = {middle:+.1f} mm", abs(middle) <= 5.0)

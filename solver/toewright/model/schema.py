@@ -6,8 +6,11 @@ from typing import Annotated, Any, Literal
 
 from pydantic import BaseModel, ConfigDict, Field
 
-Number = Annotated[float, Field(allow_inf_nan=False)]
-Positive = Annotated[float, Field(gt=0.0, allow_inf_nan=False)]
+LARGEST = 1e6
+"""No number of a car is larger, in any unit."""
+
+Number = Annotated[float, Field(ge=-LARGEST, le=LARGEST, allow_inf_nan=False)]
+Positive = Annotated[float, Field(gt=0.0, le=LARGEST, allow_inf_nan=False)]
 Point = Annotated[list[Number], Field(min_length=3, max_length=3)]
 
 

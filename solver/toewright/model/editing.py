@@ -1,0 +1,202 @@
+"""Hardpoint files written: points moved in a file whose comments and order stay, and whole files from an axle in memory."""
+
+from __future__ import annotations
+
+import json
+import math
+import os
+from collections.abc import Mapping, Sequence
+from pathlib import Path
+
+import numpy as np
+import tomlkit
+from numpy.typing import ArrayLike
+from tomlkit.exceptions import TOMLKitError
+from tomlkit.items import Array
+
+from toewright.core.types import FloatArray
+from toewright.model.axle import POINT_NAMES, Axle, Corner
+from toewright.model.errors import InputError
+from toewright.model.files import MEMORY, loads, parse, read_text
+from toewright.model.frames import MM_PER, from_iso
+from toewright.model.writing import write_text
+
+DECIMALS = 9
+"""Decimals of a written coordinate in mm; other units get as many more as they are larger."""
+
+
+def set_points(source: str | Path, moved: Mapping[tuple[str, str], ArrayLike], file: str = MEMORY) -> str:
+    """The file's text with points moved; everything but the numbers that change stays byte for byte.
+
+    Args:
+        source: a file, or its text.
+        moved: {(side, point): (3,) mm in ISO 8855 axes}; written in the file's own axes and unit.
+        file: name for messages where ``source`` is text.
+
+    Raises:
+        InputError: if the file is not valid, has no such point, leaves that side out, or a coordinate is not finite.
+    """
+    text, file = (read_text(source), str(source)) if isinstance(source, Path) else (source, file)
+    written = parse(text, file)
+    try:
+        document = tomlkit.parse(text)
+    except TOMLKitError as error:
+        raise InputError(f"{file}: can't be edited ({error}); simplify the line") from error
+    decimals = DECIMALS + max(0, math.floor(math.log10(MM_PER[written.length_unit])))
+    for (side, name), point in moved.items():
+        values = from_iso(np.asarray(point, dtype=float), written.axes, written.length_unit)
+        if values.shape != (3,) or not np.all(np.isfinite(values)):
+            raise InputError(
+                f"{file}: {side}.points.{name}: can't be moved to {values.tolist()}; give three finite numbers"
+            )
+        array = _array(document, side, name, file)
+        for i, value in enumerate(values):
+            number = round(float(value), decimals) + 0.0
+            if float(array[i]) != number:
+                array[i] = number
+    return tomlkit.dumps(document)
+
+
+def _array(document: tomlkit.TOMLDocument, side: str, name: str, file: str) -> Array:
+    corner = document.get(side)
+    if corner is None and side == "right":
+        raise InputError(
+            f"{file}: right.points.{name}: the right side is left out because it mirrors the left; move the left point, or write [right]"
+        )
+    found = corner["points"].get(name) if isinstance(corner, Mapping) else None
+    if not isinstance(found, Array):
+        raise InputError(f"{file}: {side}.points.{name}: there is no such point; check side and name")
+    return found
+
+
+def save_points(path: Path, moved: Mapping[tuple[str, str], ArrayLike], out: Path, *, force: bool = False) -> Axle:
+    """Write a copy of a hardpoint file with points moved, checked before it is written; ``out`` may be ``path`` with ``force``.
+
+    Args:
+        path: the file.
+        moved: as in ``set_points``.
+        out: where to write.
+        force: replace ``out`` if it exists.
+
+    Returns:
+        The axle as it now is.
+
+    Raises:
+        InputError: as ``set_points``; if the moved points make no valid axle; if ``out`` is refused or can't be written.
+    """
+    text = set_points(path, moved)
+    axle = loads(text, file=f"{path} with the points moved", folder=out.parent)
+    write_text(out, text, force=force)
+    return axle
+
+
+def save(axle: Axle, path: Path, *, force: bool = False) -> None:
+    """Write an axle as a new hardpoint file (mm, ISO 8855).
+
+    Raises:
+        InputError: if the file is refused or can't be written.
+    """
+    write_text(path, dumps(axle, folder=path.parent), force=force)
+
+
+def dumps(axle: Axle, *, heading: Sequence[str] = (), hints: bool = False, folder: Path | None = None) -> str:
+    """An axle as the text of a hardpoint file, mm and ISO 8855 axes, coordinates to 1e-9 mm.
+
+    Args:
+        axle: what to write.
+        heading: lines of a comment at the top.
+        hints: add comments with optional keys that are not there.
+        folder: where the file will be; ``other_axle`` is written relative to it.
+    """
+    lines = [f"# {line}" for line in heading]
+    lines += ["schema = 1", f"title = {_text(axle.title)}", 'axes = "iso-8855"', 'length_unit = "mm"', ""]
+    lines += [*_vehicle(axle, hints, folder), "", *_wheel(axle, hints), ""]
+    lines += ["[setup]                        # static angles of each wheel"]
+    lines += [
+        _line("toe_in", axle.setup.toe_in, "deg, toe-in +"),
+        _line("camber", axle.setup.camber, "deg, top outboard +"),
+    ]
+    lines += ["", *_rack(axle, hints)]
+    for corner in (axle.left,) if axle.symmetric else (axle.left, axle.right):
+        lines += _corner(corner)
+    if hints and axle.symmetric:
+        lines += ["# [right] left out: the mirror image of the left", ""]
+    text = "\n".join(lines).rstrip() + "\n"
+    return text + (f"\n{tomlkit.dumps(dict(axle.extra))}" if axle.extra else "")
+
+
+def _text(text: str) -> str:
+    """A string in quotes, as TOML and JSON have them in common."""
+    return json.dumps(text, ensure_ascii=False).replace("\x7f", "\\u007f")
+
+
+def _number(value: float) -> str:
+    return repr(round(float(value), DECIMALS) + 0.0)
+
+
+def _line(key: str, value: float, comment: str = "") -> str:
+    made = f"{key} = {_number(value)}"
+    return f"{made:<30} # {comment}" if comment else made
+
+
+def _hint(key: str, example: str, comment: str) -> str:
+    made = f"# {key} = {example}"
+    return f"{made:<30} # {comment}"
+
+
+def _vehicle(axle: Axle, hints: bool, folder: Path | None) -> list[str]:
+    vehicle = axle.vehicle
+    lines = ["[vehicle]", f'axle = "{vehicle.axle}"']
+    if vehicle.wheelbase is not None:
+        lines.append(_line("wheelbase", vehicle.wheelbase))
+    elif hints:
+        lines.append(_hint("wheelbase", "1550.0", "to the other axle; for Ackermann and the turning circle"))
+    if vehicle.other_axle is not None:
+        place = vehicle.other_axle if folder is None else Path(os.path.relpath(vehicle.other_axle, folder))
+        lines.append(f"other_axle = {_text(place.as_posix())}")
+    for key in ("cg_height", "brake_share", "front_overhang", "body_width"):
+        if (value := getattr(vehicle, key)) is not None:
+            lines.append(_line(key, value))
+    for key in ("brakes", "drive"):
+        if (word := getattr(vehicle, key)) is not None:
+            lines.append(f'{key} = "{word}"')
+    return lines
+
+
+def _wheel(axle: Axle, hints: bool) -> list[str]:
+    lines = ["[wheel]", _line("loaded_radius", axle.wheel.loaded_radius, "wheel centre to road")]
+    for key in ("tyre_width", "rim_diameter", "rim_width"):
+        if (value := getattr(axle.wheel, key)) is not None:
+            lines.append(_line(key, value))
+    if hints and axle.wheel.rim_diameter is None:
+        lines.append(_hint("rim_diameter", "254.0", "toe in mm is measured across it"))
+    return lines
+
+
+def _rack(axle: Axle, hints: bool) -> list[str]:
+    rack = axle.rack
+    if rack is None:
+        if not hints:
+            return []
+        return ["# No [rack]: tie_rod_inner is fixed to the body (a toe link).", ""]
+    lines = [
+        "[rack]",
+        f"axis = [{', '.join(repr(float(v)) for v in rack.axis)}]",
+        _line("stroke", rack.stroke, "each way"),
+    ]
+    if rack.travel_per_turn is not None:
+        lines.append(_line("travel_per_turn", rack.travel_per_turn, "one turn of the hand wheel"))
+    elif hints:
+        lines.append(_hint("travel_per_turn", "50.0", "rack travel for one turn of the hand wheel"))
+    return [*lines, ""]
+
+
+def _corner(corner: Corner) -> list[str]:
+    points = {name: corner.points[name] for name in POINT_NAMES[corner.kind]}
+    width = max(len(name) for name in points)
+    rows = [f"{name:<{width}} = {_point(point)}" for name, point in points.items()]
+    return [f"[{corner.side}]", f'type = "{corner.kind}"', f"[{corner.side}.points]", *rows, ""]
+
+
+def _point(point: FloatArray) -> str:
+    return f"[{', '.join(_number(v) for v in point)}]"
