@@ -14,9 +14,12 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
+    from toewright.kinematics.limits import AxleLimits, limits
     from toewright.kinematics.maps import CornerMaps, Stop
+    from toewright.kinematics.riding import RideMaps, ride
     from toewright.kinematics.slopes import Slopes, slopes
     from toewright.kinematics.sweep import design_pose, sweep
+    from toewright.kinematics.turning import TurnMaps, turn
     from toewright.model.axle import Axle, Corner
     from toewright.model.errors import InputError
     from toewright.model.files import load, loads
@@ -34,21 +37,33 @@ _HOMES = {
     "load": "toewright.model.files",
     "loads": "toewright.model.files",
     "slopes": "toewright.kinematics.slopes",
+    "AxleLimits": "toewright.kinematics.limits",
+    "limits": "toewright.kinematics.limits",
+    "RideMaps": "toewright.kinematics.riding",
+    "ride": "toewright.kinematics.riding",
+    "TurnMaps": "toewright.kinematics.turning",
+    "turn": "toewright.kinematics.turning",
     "sweep": "toewright.kinematics.sweep",
 }
 
 __all__ = [
     "Axle",
+    "AxleLimits",
     "Corner",
     "CornerMaps",
     "InputError",
+    "RideMaps",
     "Slopes",
     "Stop",
+    "TurnMaps",
     "design_pose",
+    "limits",
     "load",
     "loads",
+    "ride",
     "slopes",
     "sweep",
+    "turn",
 ]
 
 

@@ -36,7 +36,12 @@ def default_travel(axle: Axle, positions: int = POSITIONS) -> FloatArray:
     return np.linspace(-reach, reach, positions)
 
 
-def _positions(values: ArrayLike | None, default: FloatArray, name: str) -> FloatArray:
+def check_positions(values: ArrayLike | None, default: FloatArray, name: str) -> FloatArray:
+    """Positions (n,) as an array, or the default.
+
+    Raises:
+        ValueError: if they are not finite numbers that ascend.
+    """
     if values is None:
         return default
     positions = np.atleast_1d(np.asarray(values, dtype=float))
@@ -70,8 +75,8 @@ def sweep(
     Raises:
         ValueError: for positions that are not finite or do not ascend, an unknown side or an unknown ``travel_at``.
     """
-    at_rack = _positions(rack, default_rack(axle), "rack")
-    at_travel = _positions(travel, default_travel(axle), "travel")
+    at_rack = check_positions(rack, default_rack(axle), "rack")
+    at_travel = check_positions(travel, default_travel(axle), "travel")
     batch = solve_batch(
         design_vectors(axle, sides), at_rack, at_travel, travel_at=travel_at, columns=(*layout.COLUMNS, "bump_steer")
     )
