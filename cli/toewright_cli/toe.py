@@ -78,8 +78,8 @@ class ToeScale:
 
     @property
     def words(self) -> str:
-        """Unit in words: ``mm per wheel, across the 254 mm rim``."""
-        return f"{_NAMES[self.unit]} {self.whose}{f', {self.across}' if self.across else ''}"
+        """Unit in words: ``mm per wheel across the 254 mm rim``."""
+        return f"{_NAMES[self.unit]} {self.whose}{f' {self.across}' if self.across else ''}"
 
     def value(self, *degrees: float) -> float:
         """Toe in this scale, toe-in +: of one wheel, or the sum of the wheels given."""

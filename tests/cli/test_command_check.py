@@ -44,18 +44,18 @@ def test_toe_is_never_bare(cli: Cli) -> None:
     lines = result.out.splitlines()
     static = lines.index(row(result.out, "static toe"))
     assert lines[static].split()[2:] == ["-0.10", "deg", "per", "wheel,", "toe-in", "+"]
-    assert lines[static + 1].split() == "as measured 0.44 out mm per wheel, across the 254 mm rim".split()
+    assert lines[static + 1].split() == "as measured 0.44 out mm per wheel across the 254 mm rim".split()
     rate = lines.index(row(result.out, "bump-steer rate"))
-    assert lines[rate + 1].split() == "over 25 mm of bump 0.62 in mm per wheel, across the 254 mm rim".split()
+    assert lines[rate + 1].split() == "over 25 mm of bump 0.62 in mm per wheel across the 254 mm rim".split()
 
 
 @pytest.mark.parametrize(
     ("options", "words"),
     [
         (["--toe-unit", "min"], "6.0 out min of arc per wheel"),
-        (["--toe-diameter", "600"], "1.05 out mm per wheel, across 600 mm"),
-        (["--toe-total"], "0.89 out mm total of both wheels, across the 254 mm rim"),
-        (["--toe-unit", "in"], "0.0175 toe-out inch per wheel, across the 254 mm rim"),
+        (["--toe-diameter", "600"], "1.05 out mm per wheel across 600 mm"),
+        (["--toe-total"], "0.89 out mm total of both wheels across the 254 mm rim"),
+        (["--toe-unit", "in"], "0.0175 toe-out inch per wheel across the 254 mm rim"),
     ],
 )
 def test_the_workshop_can_have_its_unit(cli: Cli, options: list[str], words: str) -> None:

@@ -124,7 +124,7 @@ def test_json_summary(cli: Cli) -> None:
     summary = json.loads(result.out)
     maps = tw.sweep(tw.load(FRONT), None, np.linspace(-20, 20, 5))
     assert summary["poses"] == summary["poses_ok"] == 2 * 21 * 5
-    assert summary["toe_scale"] == "mm per wheel, across the 254 mm rim, toe-in +"
+    assert summary["toe_scale"] == "mm per wheel across the 254 mm rim, toe-in +"
     left = summary["bump_steer"][0]
     assert [c["rack_travel"] for c in left["columns"]] == [-30.0, 0.0, 30.0]
     for column, i in zip(left["columns"], (0, 10, 20), strict=True):
@@ -240,7 +240,11 @@ def test_bad_requests_are_refused(cli: Cli, tmp_path: Path, arguments: list[str]
 def test_bad_files_are_refused(cli: Cli, tmp_path: Path) -> None:
     broken = tmp_path / "broken.toml"
     broken.write_text("schema = 1\ntitle = \n")
-    for path, words in ((tmp_path / "none.toml", "there is no such file"), (tmp_path, "is a folder"), (broken, "line 2")):
+    for path, words in (
+        (tmp_path / "none.toml", "there is no such file"),
+        (tmp_path, "is a folder"),
+        (broken, "line 2"),
+    ):
         result = cli("sweep", path)
         assert result.code == 2
         assert str(path) in result.complaint

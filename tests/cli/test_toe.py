@@ -73,8 +73,8 @@ def test_the_total_is_the_sum_of_the_wheels(unit: ToeUnit, left: float, right: f
 
 
 def test_the_rim_is_the_default_diameter_and_is_named() -> None:
-    assert toe_scale(RIMMED, ToeUnit.MM, None, False).words == "mm per wheel, across the 254 mm rim"
-    assert toe_scale(RIMMED, ToeUnit.MM, 500.0, True).words == "mm total of both wheels, across 500 mm"
+    assert toe_scale(RIMMED, ToeUnit.MM, None, False).words == "mm per wheel across the 254 mm rim"
+    assert toe_scale(RIMMED, ToeUnit.MM, 500.0, True).words == "mm total of both wheels across 500 mm"
     assert toe_scale(AXLE, ToeUnit.DEG, None, False).words == "deg per wheel"
 
 
@@ -92,6 +92,6 @@ def test_a_diameter_must_be_a_length(diameter: float) -> None:
 
 def test_the_workshop_measures_mm_where_a_diameter_is_known_and_minutes_elsewhere() -> None:
     assert workshop_scale(RIMMED, None, None, False).unit is ToeUnit.MM
-    assert workshop_scale(AXLE, None, 330.0, False).words == "mm per wheel, across 330 mm"
+    assert workshop_scale(AXLE, None, 330.0, False).words == "mm per wheel across 330 mm"
     assert workshop_scale(AXLE, None, None, False).unit is ToeUnit.MIN
     assert workshop_scale(RIMMED, ToeUnit.DEG, None, False).unit is ToeUnit.DEG

@@ -203,7 +203,7 @@ def _print_worst(axle: Axle, tables: Sequence[BumpSteer], scale: ToeScale, one: 
     place = max(worst, key=lambda spot: abs(spot.value))
     mirrored = ""
     if one and place.side != "both" and place.rack_travel:
-        mirrored = f" (and right wheel at rack {number(-place.rack_travel, 1)} mm)"
+        mirrored = f", and the right wheel at rack {number(-place.rack_travel, 1)} mm"
     say(f"Worst place: {scale.text(*place.values)}: {_place_words(axle, place)}{mirrored}.")
     straight = [table.worst_straight for table in tables if table.worst_straight is not None]
     if straight and axle.rack is not None:
