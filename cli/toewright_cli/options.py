@@ -130,6 +130,15 @@ def parse_list(text: str | None, option: str) -> list[float] | None:
     return values
 
 
+def parse_number(value: float | None, option: str) -> float | None:
+    """A single number of an option; None stays None.
+
+    Raises:
+        InputError: if it is not finite or out of all proportion.
+    """
+    return None if value is None else _number(repr(value), option, f"{value:g}")
+
+
 def parse_rack(text: str | None, axle: Axle) -> list[float] | None:
     """The LIST of ``--rack`` for an axle; an axle without a rack takes 0 only.
 

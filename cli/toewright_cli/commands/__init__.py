@@ -9,6 +9,8 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "import": ("import_", "import_points"),
     "check": ("check", "check"),
     "sweep": ("sweep", "sweep"),
+    "turn": ("turn", "turn"),
+    "ride": ("ride", "ride"),
     "schema": ("schema", "schema"),
 }
 """Each command: its module here and the function in it; ``toewright --help`` lists them in this order."""

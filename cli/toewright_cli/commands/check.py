@@ -29,9 +29,11 @@ def check(
 
     Example: toewright check hardpoints/*.toml
     """
+    from toewright.kinematics.limits import limits
     from toewright.kinematics.sheet import SHEET_COLUMNS, design_sheets
     from toewright.model.errors import InputError
     from toewright.model.files import load
+    from toewright_cli.show.limits import limits_document, print_limits
     from toewright_cli.show.sheet import print_sheet, sheet_document
 
     documents: list[dict[str, Any]] = []
@@ -42,17 +44,19 @@ def check(
             workshop = workshop_scale(axle, toe_unit, toe_diameter, toe_total)
             notice_compilation()
             sheets = design_sheets(axle)
+            bounds = limits(axle)
         except InputError as error:
             faults += 1
             complain(str(error))
             documents.append({"file": str(file), "error": str(error)})
             continue
         if as_json:
-            documents.append(sheet_document(axle, sheets))
+            documents.append({**sheet_document(axle, sheets), "limits": limits_document(axle, bounds)})
         else:
             if shown:
                 typer.echo()
             print_sheet(axle, sheets, workshop)
+            print_limits(axle, bounds)
         shown += 1
     if as_json:
         print_json(documents)

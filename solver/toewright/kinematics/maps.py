@@ -76,22 +76,26 @@ class Stop:
     requested: float
 
     @property
+    def cause(self) -> str:
+        """Why, in words."""
+        if self.status == "locked":
+            return "the tie rod and the steering arm come into line and the steering locks"
+        return "the arms are stretched out and the wheel cannot go farther"
+
+    @property
+    def place(self) -> str:
+        """Where, in words with units: ``rack travel -55.99 mm (wheel travel 0 mm)``."""
+        words = {
+            "rack_travel": f"rack travel {self.rack_travel:+.2f} mm",
+            "wheel_travel": f"wheel travel {self.wheel_travel:+.2f} mm",
+        }
+        held = "wheel_travel" if self.along == "rack_travel" else "rack_travel"
+        return f"{words[self.along]} ({words[held].replace('+0.00', '0')})"
+
+    @property
     def sentence(self) -> str:
         """What happens there, in one sentence with units."""
-        cause = (
-            "the tie rod and the steering arm come into line and the steering locks"
-            if self.status == "locked"
-            else "the arms are stretched out and the wheel cannot go farther"
-        )
-        moved, held = (
-            ("rack travel", "wheel travel") if self.along == "rack_travel" else ("wheel travel", "rack travel")
-        )
-        at = self.rack_travel if self.along == "rack_travel" else self.wheel_travel
-        fixed = self.wheel_travel if self.along == "rack_travel" else self.rack_travel
-        return (
-            f"{self.side}: stops at {moved} {at:+.2f} mm ({held} {fixed:+.2f} mm; {self.requested:+.2f} mm was asked for): "
-            f"{cause}"
-        )
+        return f"{self.side}: stops at {self.place[:-1]}; {self.requested:+.2f} mm was asked for): {self.cause}"
 
 
 @dataclass(frozen=True)

@@ -56,7 +56,7 @@ RIDE_COLUMNS = (
     "bump_steer_rate_right",
     *ANTI_COLUMNS,
 )
-"""Columns of the long table, in its order; ``axle_steer_rate``, ``roll_steer`` and the camber gains follow."""
+"""Columns of the long table, in its order; ``axle_steer_rate``, ``roll_steer``, the bump steer and the camber gains follow."""
 
 LARGEST_ROLL = 3.0
 """Default roll angles reach this far either way (deg)."""
@@ -214,6 +214,7 @@ def _figures(axle: Axle, state: _State, zero: PoseList, *, rolling: bool) -> dic
     camber_road = -signs * np.degrees(np.arcsin(contact.lean))
     for s, name in enumerate(SIDES):
         columns[f"toe_in_{name}"] = poses["toe_in"][s].copy()
+        columns[f"bump_steer_{name}"] = poses["toe_in"][s] - zero["toe_in"][s]
         columns[f"camber_{name}"] = poses["camber"][s].copy()
         columns[f"camber_road_{name}"] = camber_road[s]
         columns[f"recession_{name}"] = start[s, :, 0] - centre[s, :, 0]

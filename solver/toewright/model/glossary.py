@@ -135,6 +135,8 @@ _RIDING: tuple[_Row, ...] = (
     ("bump", "", "mm", "bump", "bump +, rebound -", "wheel travel of both wheels, or of the one that moves"),
     ("roll_angle", "phi", "deg", "roll angle", "right side of the body down +", "rotation of the body about x against the road (ISO 8855)"),
     ("axle_steer", "", "deg", "axle steer", "to the left +", "mean steer angle of both wheels less its value at zero travel and the same rack"),
+    ("bump_steer_left", "", "deg", "bump steer, left", "toe-in +", "toe_in of the left wheel less its value at zero travel and the same rack"),
+    ("bump_steer_right", "", "deg", "bump steer, right", "toe-in +", "toe_in of the right wheel less its value at zero travel and the same rack"),
     ("axle_steer_rate", "", "deg/mm", "axle steer rate", "left with bump +",
      "d axle_steer / d wheel travel of both wheels, or of the one that moves, exact"),
     ("roll_steer", "", "deg/deg", "roll steer", "to the left with roll +", "d axle_steer / d roll_angle at fixed rack, exact"),

@@ -1,0 +1,189 @@
+"""A ride on the terminal and as JSON."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+from toewright_cli.console import print_table, say
+from toewright_cli.outputs import meanings, source_of
+from toewright_cli.show.maps import spread_indices
+from toewright_cli.show.words import axle_words, number
+
+if TYPE_CHECKING:
+    from toewright.core.types import FloatArray
+    from toewright.kinematics.riding import RideMaps
+    from toewright.model.axle import Axle
+    from toewright_cli.toe import ToeScale
+
+ROWS = 11
+"""Rows of each compact table, about."""
+
+EXPLAINED = (
+    "bump",
+    "roll_angle",
+    "bump_steer",
+    "axle_steer",
+    "roll_steer",
+    "camber",
+    "camber_road_left",
+    "track_change",
+    "recession_left",
+    "roll_centre_y",
+    "roll_centre_z",
+    "swing_arm_left",
+    "bump_steer_rate",
+    "anti_dive_left",
+    "anti_lift_left",
+    "anti_squat_left",
+)
+"""What ``--explain`` defines."""
+
+_TITLES = {
+    "bump": "Bump: both wheels together",
+    "roll": "Roll: the body rolls on a flat road",
+    "single": "One wheel",
+}
+
+
+def print_ride(axle: Axle, ridden: RideMaps, scale: ToeScale) -> None:
+    """The compact table of each motion with its worst place, then the notes."""
+    say(axle.title, style="bold")
+    rack = "" if axle.rack is None else f"; rack at {number(ridden.rack_travel, 1)} mm"
+    say(f"{axle.path}: {axle_words(axle)}{rack}")
+    for motion in dict.fromkeys(ridden.motion.tolist()):
+        rows = np.flatnonzero(ridden.part(motion))
+        say("")
+        what = _TITLES[motion] if motion != "single" else f"The {ridden.moving_side} wheel alone, the other one stays"
+        say(f"{what}; toe change (toe ch.) from zero travel in {scale.words}", style="bold")
+        _print_motion(axle, ridden, motion, rows, scale)
+    say(
+        "Signs: camber top outboard +; steer to the left +; recession rearward +; track change wider +; roll: right side down +; "
+        "roll centre (roll c.): above the road +, left +; swing arm: instant centre inboard +."
+    )
+    for note in ridden.notes:
+        say(note)
+
+
+def _print_motion(axle: Axle, ridden: RideMaps, motion: str, rows: np.ndarray[Any, Any], scale: ToeScale) -> None:
+    at = ridden["roll_angle" if motion == "roll" else "bump"][rows]
+    zero = int(np.argmin(np.abs(at)))
+    picked = [int(rows[k]) for k in reversed(spread_indices(rows.size, ROWS, zero))]
+    alike = motion == "bump" and axle.symmetric and abs(ridden.rack_travel) < 1e-9
+    columns = _columns(ridden, motion, alike)
+    headings = ["roll\n\ndeg" if motion == "roll" else "bump\n\nmm", *(heading for heading, _, _ in columns)]
+    table = []
+    for i in picked:
+        position = float(ridden["roll_angle" if motion == "roll" else "bump"][i])
+        state = str(ridden.status_names[i])
+        if state != "ok":
+            table.append([number(position, 1), state, *[""] * (len(columns) - 1)])
+            continue
+        cells = []
+        for _, name, places in columns:
+            value = float(ridden[name][i])
+            cells.append(scale.cell(value).rstrip() if places < 0 else number(value, places))
+        table.append([number(position, 1), *cells])
+    print_table(headings, table, right=range(len(headings)))
+    for sentence in _worst(ridden, motion, rows, scale, alike):
+        say(sentence)
+
+
+def _columns(ridden: RideMaps, motion: str, alike: bool) -> list[tuple[str, str, int]]:
+    """Heading, column and decimals (negative: a toe number) of a motion's table."""
+    sides = ("left",) if alike else ("left", "right")
+    which = {"left": "each" if alike else "left", "right": "right"}
+    side = ridden.moving_side
+    if motion == "roll":
+        return [
+            *((f"toe ch.\n{s}\n", f"bump_steer_{s}", -1) for s in ("left", "right")),
+            ("axle\nsteer\ndeg", "axle_steer", 3),
+            *((f"camber\nroad {s[0].upper()}\ndeg", f"camber_road_{s}", 2) for s in ("left", "right")),
+            ("travel\nright\nmm", "wheel_travel_right", 1),
+            ("roll c.\nheight\nmm", "roll_centre_z", 1),
+            ("roll c.\nlateral\nmm", "roll_centre_y", 1),
+        ]
+    if motion == "single":
+        return [
+            (f"toe ch.\n{side}\n", f"bump_steer_{side}", -1),
+            ("axle\nsteer\ndeg", "axle_steer", 3),
+            (f"camber\n{side}\ndeg", f"camber_{side}", 2),
+            ("track\n\nmm", "track_change", 2),
+            ("reces-\nsion\nmm", f"recession_{side}", 2),
+            ("roll c.\nheight\nmm", "roll_centre_z", 1),
+            ("roll c.\nlateral\nmm", "roll_centre_y", 1),
+        ]
+    found = [
+        *((f"toe ch.\n{which[s]}\n", f"bump_steer_{s}", -1) for s in sides),
+        *((f"camber\n{which[s]}\ndeg", f"camber_{s}", 2) for s in sides),
+        ("track\n\nmm", "track_change", 2),
+        ("roll c.\nheight\nmm", "roll_centre_z", 1),
+    ]
+    if alike:
+        found += [("reces-\nsion\nmm", "recession_left", 2), ("swing\narm\nmm", "swing_arm_left", 0)]
+    else:
+        found.append(("roll c.\nlateral\nmm", "roll_centre_y", 1))
+    for kind, label in (
+        ("anti_dive", "anti-\ndive\n%"),
+        ("anti_lift", "anti-\nlift\n%"),
+        ("anti_squat", "anti-\nsquat\n%"),
+    ):
+        if np.isfinite(ridden[f"{kind}_left"]).any():
+            found.append((label, f"{kind}_left", 0))
+    return found
+
+
+def _worst(ridden: RideMaps, motion: str, rows: np.ndarray[Any, Any], scale: ToeScale, alike: bool) -> list[str]:
+    """The worst place of a motion, named; and the rate at its middle."""
+    unit = "deg of roll" if motion == "roll" else "mm of bump"
+    at = ridden["roll_angle" if motion == "roll" else "bump"]
+    found = []
+    if motion == "roll":
+        steer = ridden["axle_steer"][rows]
+        if np.isfinite(steer).any():
+            k = int(rows[int(np.nanargmax(np.abs(steer)))])
+            value = float(ridden["axle_steer"][k])
+            middle = int(rows[int(np.argmin(np.abs(at[rows])))])
+            found.append(
+                f"Worst place: the axle steers {abs(value):.3f} deg to the {'left' if value > 0 else 'right'} at "
+                f"{number(float(at[k]), 1)} {unit}; roll steer {number(float(ridden['roll_steer'][middle]), 4)} deg/deg "
+                f"at {number(float(at[middle]), 1)} deg."
+            )
+    else:
+        changes: list[tuple[float, int, str]] = []
+        for side in ("left", "right"):
+            values: FloatArray = ridden[f"bump_steer_{side}"][rows]
+            if np.isfinite(values).any():
+                k = int(np.nanargmax(np.abs(values)))
+                changes.append((float(values[k]), int(rows[k]), side))
+        if changes:
+            value, k, side = max(changes, key=lambda change: abs(change[0]))
+            wheel = "each wheel" if alike else f"{side} wheel"
+            found.append(
+                f"Worst place: toe changes by {scale.text(value)}, {wheel}, at {number(float(at[k]), 1)} {unit}."
+            )
+    lost = ridden.status[rows] != 0
+    if lost.any():
+        k = int(rows[int(np.argmin(np.where(lost, np.abs(at[rows]), np.inf)))])
+        found.append(f"Not reached from {number(float(at[k]), 1)} {unit} on: {ridden.status_names[k]}.")
+    return found
+
+
+def ride_document(axle: Axle, ridden: RideMaps, scale: ToeScale) -> dict[str, Any]:
+    """The summary for ``--json``: all columns and the worst places in words."""
+    sentences = {}
+    for motion in dict.fromkeys(ridden.motion.tolist()):
+        rows = np.flatnonzero(ridden.part(motion))
+        alike = motion == "bump" and axle.symmetric and abs(ridden.rack_travel) < 1e-9
+        sentences[motion] = _worst(ridden, motion, rows, scale, alike)
+    return {
+        **source_of(axle),
+        "rack_travel": ridden.rack_travel,
+        "moving_side": ridden.moving_side,
+        "quantities": meanings(name for name in ridden.names if name != "motion"),
+        "columns": {name: ridden.column(name) for name in ridden.names},
+        "sentences": sentences,
+        "notes": list(ridden.notes),
+        "remarks": list(axle.remarks),
+    }
