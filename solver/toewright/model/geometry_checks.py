@@ -167,7 +167,7 @@ def check_size(axle: Axle, frame: FileFrame) -> None:
         spread = float(np.max(np.ptp(np.array(list(corner.points.values())), axis=0)))
         if not SMALLEST_SPREAD <= spread <= LARGEST_SPREAD:
             raise InputError(
-                f'{frame.file}: length_unit = "{frame.unit}": the points of the {corner.side} corner span {spread:.4g} mm, which no car '
+                f'{frame.file}: length_unit = "{frame.unit}": the points of the {corner.side} corner span {spread:.6g} mm, which no car '
                 f"has; {_unit_guess(spread, frame.unit, 150.0, 2500.0)}"
             )
     for key, (low, high) in LENGTHS.items():
@@ -176,7 +176,7 @@ def check_size(axle: Axle, frame: FileFrame) -> None:
         if value is not None and not low <= value <= high:
             raw = value / MM_PER[frame.unit]
             raise InputError(
-                f'{frame.file}: {key} = {raw:.6g}: is {value:.4g} mm with length_unit = "{frame.unit}", which no car has; '
+                f'{frame.file}: {key} = {raw:.6g}: is {value:.6g} mm with length_unit = "{frame.unit}", which no car has; '
                 f"{_unit_guess(value, frame.unit, low, high, 'this looks like')}"
             )
 

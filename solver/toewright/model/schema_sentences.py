@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import difflib
+import re
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -19,6 +20,8 @@ _TABLES: Mapping[str, type[BaseModel]] = {
     "rack": schema.RackTable,
 }
 
+_DECIMAL_COMMA = re.compile(r"=\s*[+-]?\d+,\d+\s*(#.*)?$")
+
 SHOWN = 60
 """Characters of a value or a line that are shown."""
 
@@ -29,11 +32,14 @@ def syntax_sentence(text: str, file: str, reason: str) -> str:
     if where.startswith("line "):
         line, _, column = where.removeprefix("line ").rstrip(")").partition(", column ")
         shown = _line_at(text, int(line), int(column))
-        return f"{file}: line {line}, column {column} is not TOML: {shown!r} ({_lower(what)}); mend that line"
+        remedy = "write a decimal point, not a comma" if _DECIMAL_COMMA.search(shown) else "mend that line"
+        return f"{file}: line {line}, column {column} is not TOML: {shown!r} ({_lower(what)}); {remedy}"
     if where.startswith("end of document"):
         lines = text.rstrip().splitlines()
         shown = lines[-1].strip()[:SHOWN] if lines else ""
         return f"{file}: line {max(len(lines), 1)} is not TOML: {shown!r} ({_lower(what)} at the end); mend that line"
+    if "digits" in reason:
+        return f"{file}: has a number of thousands of digits; correct it"
     return f"{file}: is not TOML ({_lower(reason)}); mend that value"
 
 
@@ -64,12 +70,19 @@ def _keys(problem: ErrorDetails) -> list[str]:
     return [str(part) for part in problem["loc"] if part not in POINT_NAMES]
 
 
+def _key(where: Sequence[str]) -> str:
+    """A key as people write it; the number of a coordinate becomes its letter."""
+    if where[-1:] and where[-1] in ("0", "1", "2") and len(where) > 1:
+        return f"{'.'.join(where[:-1])}, {'xyz'[int(where[-1])]}"
+    return ".".join(where)
+
+
 def _rank(problem: ErrorDetails) -> int:
     return {"extra_forbidden": 0, "missing": 2}.get(problem["type"], 1)
 
 
 def _what(problem: ErrorDetails, where: list[str], missing: Sequence[str]) -> str:
-    key, kind, value = ".".join(where), problem["type"], problem.get("input")
+    key, kind, value = _key(where), problem["type"], problem.get("input")
     shown = _shown(value)
     context = problem.get("ctx", {})
     if kind == "extra_forbidden":
@@ -85,9 +98,12 @@ def _what(problem: ErrorDetails, where: list[str], missing: Sequence[str]) -> st
     if kind == "literal_error":
         if where == ["schema"]:
             return f"schema{shown}: this version reads schema = 1; write that, or take the version of toewright it was made for"
-        return f"{key}{shown}: is not known; {_choice(value, str(context.get('expected', '')).replace(chr(39), '').split(' or '))}"
+        allowed = re.findall(r"'([^']*)'", str(context.get("expected")))
+        return f"{key}{shown}: is not known; {_choice(value, allowed)}"
     if kind == "finite_number":
         return f"{key}{shown}: is not a finite number; write a number"
+    if kind == "float_type" and type(value) is int:
+        return f"{key}{shown}: must be at most {schema.LARGEST:.0f}; correct the number or its unit"
     if kind in ("float_type", "float_parsing", "int_type"):
         return f"{key}{shown}: is {_kind_of(value)} where a number is wanted; write a number, without quotes"
     if kind == "string_type":
@@ -96,15 +112,20 @@ def _what(problem: ErrorDetails, where: list[str], missing: Sequence[str]) -> st
         return f"{key}{shown}: is {_kind_of(value)} where a point is wanted; write [x, y, z]"
     if kind in ("too_short", "too_long"):
         count = len(value) if isinstance(value, Sequence) else 0
-        return f"{key} = {str(value)[:SHOWN]}: has {count} numbers; write three, [x, y, z]"
+        comma = ", with decimal points, not commas" if count > 4 else ""
+        return f"{key} = {str(value)[:SHOWN]}: has {count} numbers; write three, [x, y, z]{comma}"
     if kind in ("model_type", "model_attributes_type", "dict_type"):
         return f"{key}{shown}: is {_kind_of(value)} where a table is wanted; write [{key}] and its keys below"
     limits = {"greater_than": ("above", "gt"), "less_than": ("below", "lt")}
     limits |= {"greater_than_equal": ("at least", "ge"), "less_than_equal": ("at most", "le")}
     if kind in limits:
         word, limit = limits[kind]
-        return f"{key}{shown}: must be {word} {context.get(limit):g}; correct the number or its unit"
+        return f"{key}{shown}: must be {word} {_plain(context.get(limit))}; correct the number or its unit"
     return f"{key}{shown}: {_lower(problem['msg'])}; correct it"
+
+
+def _plain(limit: object) -> str:
+    return f"{limit:.0f}" if isinstance(limit, float) and limit == round(limit) else str(limit)
 
 
 def _shown(value: object) -> str:
@@ -134,20 +155,21 @@ def _kind_of(value: object) -> str:
 
 def _choice(value: object, allowed: Sequence[str]) -> str:
     close = difflib.get_close_matches(str(value).lower(), allowed, n=1, cutoff=0.5)
-    if close:
+    if close and len(close[0]) > 3:
         return f'did you mean "{close[0]}"?'
     return f"write {' or '.join(chr(34) + word + chr(34) for word in allowed)}"
 
 
 def _missing(table: str, names: list[str]) -> str:
+    verb = "is" if len(names) == 1 else "are"
     if table.endswith(".points"):
-        lines = "it" if len(names) == 1 else "them"
-        return f"{table}: {', '.join(names)} {'is' if len(names) == 1 else 'are'} missing; add {lines}, each as name = [x, y, z]"
+        remedy = f"{names[0]} = [x, y, z]" if len(names) == 1 else "each as name = [x, y, z]"
+        return f"{table}: {', '.join(names)} {verb} missing; add {remedy}"
     if not table and names[0] in ("left", "wheel"):
-        example = {"left": 'type = "double-wishbone"', "wheel": "loaded_radius = 300.0"}[names[0]]
-        return f"{', '.join(names)}: {'is' if len(names) == 1 else 'are'} missing; add [{names[0]}] with {example}"
-    where = f"{table}." if table else ""
-    return f"{', '.join(where + name for name in names)}: {'is' if len(names) == 1 else 'are'} missing; add {where}{names[0]}"
+        example = {"left": 'type = "double-wishbone" and [left.points]', "wheel": "loaded_radius"}[names[0]]
+        return f"{', '.join(names)}: {verb} missing; add [{names[0]}] with {example}"
+    where = f" under [{table}]" if table else ""
+    return f"{', '.join(f'{table}.{name}'.lstrip('.') for name in names)}: {verb} missing; add {names[0]}{where}"
 
 
 def _unknown_hint(where: list[str], location: tuple[Any, ...]) -> str:
