@@ -86,6 +86,9 @@ def test_mirror_images_are_shown_once_and_unequal_sides_twice(cli: Cli) -> None:
     twice = cli("sweep", UNEQUAL).out
     assert "Bump steer, left wheel:" in twice
     assert "Bump steer, right wheel:" in twice
+    assert "Over the whole map, left wheel" in twice
+    assert "Over the whole map, right wheel" in twice
+    assert "Over the whole map, right wheel" not in once
     uneven = cli("sweep", FRONT, "--rack", "0,10,20").out
     assert "Bump steer, right wheel:" in uneven
 
