@@ -22,7 +22,7 @@ from toewright.model.frames import MM_PER, from_iso
 from toewright.model.writing import write_text
 
 DECIMALS = 9
-"""Decimals of a written coordinate in mm; other units get as many more as they are larger."""
+"""Decimals of a written coordinate in mm; in a larger unit as many more as keep that accuracy."""
 
 
 def set_points(source: str | Path, moved: Mapping[tuple[str, str], ArrayLike], file: str = MEMORY) -> str:
@@ -42,13 +42,14 @@ def set_points(source: str | Path, moved: Mapping[tuple[str, str], ArrayLike], f
         document = tomlkit.parse(text)
     except TOMLKitError as error:
         raise InputError(f"{file}: can't be edited ({error}); simplify the line") from error
-    decimals = DECIMALS + max(0, math.floor(math.log10(MM_PER[written.length_unit])))
+    decimals = DECIMALS + math.ceil(math.log10(MM_PER[written.length_unit]))
     for (side, name), point in moved.items():
-        values = from_iso(np.asarray(point, dtype=float), written.axes, written.length_unit)
-        if values.shape != (3,) or not np.all(np.isfinite(values)):
+        place = np.asarray(point, dtype=float)
+        if place.shape != (3,) or not np.all(np.isfinite(place)):
             raise InputError(
-                f"{file}: {side}.points.{name}: can't be moved to {values.tolist()}; give three finite numbers"
+                f"{file}: {side}.points.{name}: can't be moved to {place.tolist()}; give three finite numbers"
             )
+        values = from_iso(place, written.axes, written.length_unit)
         array = _array(document, side, name, file)
         for i, value in enumerate(values):
             number = round(float(value), decimals) + 0.0
