@@ -122,8 +122,6 @@ def _columns(ridden: RideMaps, motion: str, alike: bool) -> list[tuple[str, str,
     ]
     if alike:
         found += [("reces-\nsion\nmm", "recession_left", 2), ("swing\narm\nmm", "swing_arm_left", 0)]
-    else:
-        found.append(("roll c.\nlateral\nmm", "roll_centre_y", 1))
     for kind, label in (
         ("anti_dive", "anti-\ndive\n%"),
         ("anti_lift", "anti-\nlift\n%"),
