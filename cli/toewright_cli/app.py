@@ -101,8 +101,8 @@ def run(arguments: Sequence[str] | None = None) -> int:
     """Run the command line and return its exit code: 0 done, 1 a check failed, 2 bad input, 130 interrupted."""
     from toewright.model.errors import InputError
 
-    command = typer.main.get_command(app)
     try:
+        command = typer.main.get_command(app)
         code = command.main(
             args=None if arguments is None else list(arguments), prog_name="toewright", standalone_mode=False
         )
