@@ -10,7 +10,8 @@ from hypothesis import strategies as st
 
 from toewright.model.axle import Wheel
 from toewright.model.errors import InputError
-from toewright_cli.toe import ToeScale, ToeUnit, toe_scale, workshop_scale
+from toewright.views.toe import ToeScale, ToeUnit
+from toewright_cli.toe import toe_scale, workshop_scale
 
 AXLE = make_axle(PLAIN["double-wishbone"])
 RIMMED = replace(AXLE, wheel=Wheel(228.0, rim_diameter=254.0))

@@ -7,11 +7,12 @@ from typing import Annotated
 
 import typer
 
+from toewright.views.toe import ToeUnit
 from toewright_cli.console import print_definitions, print_json, print_remarks
 from toewright_cli.options import AsJson, Explain, Force, HardpointFile, Out, TravelList, parse_list, parse_number
 from toewright_cli.outputs import check_out, save_results
 from toewright_cli.progress import notice_compilation, working
-from toewright_cli.toe import ToeDiameterOption, ToeUnit, ToeUnitOption, toe_scale
+from toewright_cli.toe import ToeDiameterOption, ToeUnitOption, toe_scale
 
 
 class MotionChoice(StrEnum):

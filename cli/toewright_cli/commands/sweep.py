@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from toewright.views.toe import ToeUnit
 from toewright_cli.console import print_definitions, print_json, print_remarks, warn
 from toewright_cli.options import (
     AsJson,
@@ -20,7 +21,7 @@ from toewright_cli.options import (
 )
 from toewright_cli.outputs import check_out, save_results
 from toewright_cli.progress import notice_compilation, working
-from toewright_cli.toe import ToeDiameterOption, ToeTotalOption, ToeUnit, ToeUnitOption, toe_scale
+from toewright_cli.toe import ToeDiameterOption, ToeTotalOption, ToeUnitOption, toe_scale
 
 MOST_POSES = 1_000_000
 """Poses of one sweep; each takes about a kilobyte while it is worked on."""

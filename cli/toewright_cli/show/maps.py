@@ -6,9 +6,9 @@ from typing import TYPE_CHECKING, Any
 
 from rich.text import Text
 
+from toewright.views.words import axle_words, figure, lock_words, number, span_words, travel_words
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import Table, meanings, source_of
-from toewright_cli.show.words import axle_words, figure, lock_words, number, span_words, travel_words
 
 if TYPE_CHECKING:
     from collections.abc import Iterator, Sequence
@@ -16,7 +16,7 @@ if TYPE_CHECKING:
     from toewright.kinematics.maps import CornerMaps, Stop
     from toewright.kinematics.summary import BumpSteer, Place, Range
     from toewright.model.axle import Axle
-    from toewright_cli.toe import ToeScale
+    from toewright.views.toe import ToeScale
 
 ROWS = 11
 """Wheel-travel rows of the compact table, about."""

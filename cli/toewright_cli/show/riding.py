@@ -6,16 +6,16 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
+from toewright.views.sentences import ride_sentences
+from toewright.views.words import axle_words, number
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
 from toewright_cli.show.maps import spread_indices
-from toewright_cli.show.words import axle_words, number
 
 if TYPE_CHECKING:
-    from toewright.core.types import FloatArray
     from toewright.kinematics.riding import RideMaps
     from toewright.model.axle import Axle
-    from toewright_cli.toe import ToeScale
+    from toewright.views.toe import ToeScale
 
 ROWS = 11
 """Rows of each compact table, about."""
@@ -86,7 +86,7 @@ def _print_motion(axle: Axle, ridden: RideMaps, motion: str, rows: np.ndarray[An
             cells.append(scale.cell(value).rstrip() if places < 0 else number(value, places))
         table.append([number(position, 1), *cells])
     print_table(headings, table, right=range(len(headings)))
-    for sentence in _worst(ridden, motion, rows, scale, alike):
+    for sentence in ride_sentences(ridden, motion, rows, scale, alike):
         say(sentence)
 
 
@@ -132,49 +132,13 @@ def _columns(ridden: RideMaps, motion: str, alike: bool) -> list[tuple[str, str,
     return found
 
 
-def _worst(ridden: RideMaps, motion: str, rows: np.ndarray[Any, Any], scale: ToeScale, alike: bool) -> list[str]:
-    """The worst place of a motion, named; and the rate at its middle."""
-    unit = "deg of roll" if motion == "roll" else "mm of bump"
-    at = ridden["roll_angle" if motion == "roll" else "bump"]
-    found = []
-    if motion == "roll":
-        steer = ridden["axle_steer"][rows]
-        if np.isfinite(steer).any():
-            k = int(rows[int(np.nanargmax(np.abs(steer)))])
-            value = float(ridden["axle_steer"][k])
-            middle = int(rows[int(np.argmin(np.abs(at[rows])))])
-            found.append(
-                f"Worst place: the axle steers {abs(value):.3f} deg to the {'left' if value > 0 else 'right'} at "
-                f"{number(float(at[k]), 1)} {unit}; roll steer {number(float(ridden['roll_steer'][middle]), 4)} deg/deg "
-                f"at {number(float(at[middle]), 1)} deg."
-            )
-    else:
-        changes: list[tuple[float, int, str]] = []
-        for side in ("left", "right"):
-            values: FloatArray = ridden[f"bump_steer_{side}"][rows]
-            if np.isfinite(values).any():
-                k = int(np.nanargmax(np.abs(values)))
-                changes.append((float(values[k]), int(rows[k]), side))
-        if changes:
-            value, k, side = max(changes, key=lambda change: abs(change[0]))
-            wheel = "each wheel" if alike else f"{side} wheel"
-            found.append(
-                f"Worst place: toe changes by {scale.text(value)}, {wheel}, at {number(float(at[k]), 1)} {unit}."
-            )
-    lost = ridden.status[rows] != 0
-    if lost.any():
-        k = int(rows[int(np.argmin(np.where(lost, np.abs(at[rows]), np.inf)))])
-        found.append(f"Not reached from {number(float(at[k]), 1)} {unit} on: {ridden.status_names[k]}.")
-    return found
-
-
 def ride_document(axle: Axle, ridden: RideMaps, scale: ToeScale) -> dict[str, Any]:
     """The summary for ``--json``: all columns and the worst places in words."""
     sentences = {}
     for motion in dict.fromkeys(ridden.motion.tolist()):
         rows = np.flatnonzero(ridden.part(motion))
         alike = motion == "bump" and axle.symmetric and abs(ridden.rack_travel) < 1e-9
-        sentences[motion] = _worst(ridden, motion, rows, scale, alike)
+        sentences[motion] = ride_sentences(ridden, motion, rows, scale, alike)
     return {
         **source_of(axle),
         "rack_travel": ridden.rack_travel,

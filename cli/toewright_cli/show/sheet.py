@@ -4,34 +4,20 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+from toewright.views.sentences import sheet_remarks
+from toewright.views.words import axle_words, figure, number
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
-from toewright_cli.show.words import axle_words, figure, number
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
     from toewright.kinematics.sheet import CornerSheet
     from toewright.model.axle import Axle
-    from toewright_cli.toe import ToeScale
+    from toewright.views.toe import ToeScale
 
 WORKSHOP_TRAVEL = 25.0
 """Wheel travel (mm, bump) of the workshop's bump-steer figure."""
-
-
-def sheet_remarks(axle: Axle, sheets: Sequence[CornerSheet]) -> list[str]:
-    """The file's remarks and those on the design position, with the side; once where both sides have the same."""
-    from toewright.kinematics.summary import mirror_images
-
-    found = list(axle.remarks)
-    for sheet in sheets:
-        others = [s for s in sheets if s is not sheet]
-        for remark in sheet.remarks:
-            shared = mirror_images(axle) or all(remark in s.remarks for s in others)
-            text = f"{'both sides' if shared else sheet.side}: {remark}"
-            if text not in found:
-                found.append(text)
-    return found
 
 
 def sheet_document(axle: Axle, sheets: Sequence[CornerSheet]) -> dict[str, Any]:

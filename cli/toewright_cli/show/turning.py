@@ -6,25 +6,20 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
+from toewright.views.sentences import SHOWN_FROM, ackermann_sentences, circle_sentences, largest_slip
+from toewright.views.words import axle_words, number, span_words
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
 from toewright_cli.show.limits import limits_document, print_limits
 from toewright_cli.show.maps import spread_indices
-from toewright_cli.show.words import axle_words, number, span_words
 
 if TYPE_CHECKING:
-    from toewright.core.types import FloatArray
     from toewright.kinematics.limits import AxleLimits
     from toewright.kinematics.turning import TurnMaps
     from toewright.model.axle import Axle
 
 ROWS = 11
 """Rows of the compact table, about."""
-
-SHOWN_FROM = 3.0
-"""Mean steer (deg) from which Ackermann figures are shown: below, static toe dominates them."""
-
-SLIPS = ("slip_front_left", "slip_front_right", "slip_rear_left", "slip_rear_right")
 
 EXPLAINED = (
     "rack_travel",
@@ -43,71 +38,6 @@ EXPLAINED = (
     "transmission_angle",
 )
 """What ``--explain`` defines."""
-
-
-def largest_slip(turned: TurnMaps) -> FloatArray:
-    """Largest slip angle of the four wheels by magnitude, (N,) deg."""
-    slips: FloatArray = np.max(np.abs([turned[name] for name in SLIPS]), axis=0)
-    return slips
-
-
-def _extreme(values: FloatArray, among: np.ndarray[Any, Any]) -> int | None:
-    score = np.where(among & np.isfinite(values), np.abs(values), -1.0)
-    return int(np.argmax(score)) if np.any(score >= 0.0) else None
-
-
-def ackermann_sentences(turned: TurnMaps) -> list[str]:
-    """Which wheel turns more, in words, and the worst Ackermann error."""
-    large = np.abs(turned["mean_steer"]) >= SHOWN_FROM
-    if not np.any(large):
-        return [
-            f"Ackermann figures begin at {SHOWN_FROM:g} deg of mean steer, below which static toe dominates them: none here."
-        ]
-    more = turned.inner_turns_more[large]
-    if np.all(more > 0.0):
-        words = "the inner wheel turns more than the outer at every position shown"
-    elif np.all(more < 0.0):
-        words = "the outer wheel turns more than the inner at every position shown (reverse Ackermann)"
-    elif np.all(np.abs(more) < 1e-6):
-        words = "both wheels turn alike (parallel steer)"
-    else:
-        reverse = np.abs(turned["mean_steer"][large])[more < 0.0]
-        words = (
-            f"the outer wheel turns more than the inner (reverse Ackermann) at mean steer {reverse.min():.1f} to {reverse.max():.1f} deg, "
-            "the inner more elsewhere"
-        )
-    found = [f"From {SHOWN_FROM:g} deg of mean steer (below, static toe dominates): {words}."]
-    worst = _extreme(turned["ackermann_error"], large)
-    if worst is not None:
-        error = float(turned["ackermann_error"][worst])
-        verb = "more" if error > 0 else "less"
-        found.append(
-            f"Largest Ackermann error: the inner wheel turns {abs(error):.2f} deg {verb} than ideal, at rack "
-            f"{number(float(turned.rack_travel[worst]), 1)} mm "
-            f"(mean steer {abs(turned['mean_steer'][worst]):.1f} deg to the {'left' if turned['mean_steer'][worst] > 0 else 'right'})."
-        )
-    return found
-
-
-def _circle_sentences(turned: TurnMaps) -> list[str]:
-    found = []
-    slip = largest_slip(turned)
-    worst = _extreme(slip, np.isfinite(slip))
-    if worst is not None:
-        found.append(
-            f"Most slip at walking pace: {slip[worst]:.2f} deg on one wheel, at rack {number(float(turned.rack_travel[worst]), 1)} mm."
-        )
-    circle = turned["kerb_circle"]
-    if np.isfinite(circle).any():
-        least = int(np.nanargmin(circle))
-        wall = turned["wall_circle"][least]
-        walls = f", wall to wall {wall / 1000:.2f} m" if np.isfinite(wall) else ""
-        found.append(
-            f"Smallest turning circle: kerb to kerb {circle[least] / 1000:.2f} m{walls}, at rack "
-            f"{number(float(turned.rack_travel[least]), 1)} mm; "
-            f"turn radius {turned['turn_radius'][least] / 1000:.2f} m at the other axle."
-        )
-    return found
 
 
 def print_turn(axle: Axle, turned: TurnMaps, limits: AxleLimits, held: str) -> None:
@@ -164,7 +94,7 @@ def print_turn(axle: Axle, turned: TurnMaps, limits: AxleLimits, held: str) -> N
     say("Steer angles: to the left +. Error: inner wheel turns too much +. Ackermann: 100 true, 0 parallel, - reverse.")
     if one_way:
         say("The other way round is the mirror image.")
-    for sentence in (*ackermann_sentences(turned), *_circle_sentences(turned), *turned.notes):
+    for sentence in (*ackermann_sentences(turned), *circle_sentences(turned), *turned.notes):
         say(sentence)
     print_limits(axle, limits)
 
@@ -178,7 +108,7 @@ def turn_document(axle: Axle, turned: TurnMaps, limits: AxleLimits, held: str) -
         "quantities": meanings(turned.names),
         "columns": {name: turned.column(name) for name in turned.names},
         "inner_turns_more": turned.inner_turns_more,
-        "sentences": [*ackermann_sentences(turned), *_circle_sentences(turned), *turned.notes],
+        "sentences": [*ackermann_sentences(turned), *circle_sentences(turned), *turned.notes],
         "limits": limits_document(axle, limits),
         "remarks": list(axle.remarks),
     }

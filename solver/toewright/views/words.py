@@ -1,4 +1,4 @@
-"""Numbers and places in words, the same in every command."""
+"""Numbers and places in words, the same on the terminal, in pictures and in reports."""
 
 from __future__ import annotations
 
