@@ -30,7 +30,8 @@ def blocks(language: str) -> list[str]:
 def toewright_commands() -> list[list[str]]:
     """Arguments of every toewright command line in the README."""
     found = []
-    for line in "".join(blocks("sh") + blocks("console")).splitlines():
+    typed = [line for block in blocks("console") for line in block.splitlines() if line.startswith("$ ")]
+    for line in "".join(blocks("sh")).splitlines() + typed:
         for part in line.removeprefix("$ ").split("&&"):
             words = shlex.split(part)
             if words and words[0].endswith("toewright"):
