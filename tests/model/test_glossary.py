@@ -19,8 +19,8 @@ TURN = (
 RIDE = (
     "motion, bump, roll_angle, status, wheel_travel_left, wheel_travel_right, toe_in_left, toe_in_right, axle_steer, camber_left, "
     "camber_right, camber_road_left, camber_road_right, track_change, recession_left, recession_right, roll_centre_y, roll_centre_z, "
-    "swing_arm_left, swing_arm_right, bump_steer_rate_left, bump_steer_rate_right, anti_dive_left, anti_dive_right, anti_lift_left, anti_lift_right, "
-    "anti_squat_left, anti_squat_right"
+    "swing_arm_left, swing_arm_right, bump_steer_rate_left, bump_steer_rate_right, anti_dive_left, anti_dive_right, anti_lift_left, "
+    "anti_lift_right, anti_squat_left, anti_squat_right"
 )
 UNITS = {"mm", "deg", "deg/mm", "deg/deg", "mm/mm", "rad/mm", "%", "-"}
 WORDS_ONLY = {"side", "status", "motion"}

@@ -108,7 +108,7 @@ def _without(first: str, second: str) -> str:
 
 def _check_side(corner: Corner, frame: FileFrame) -> None:
     for name, point in corner.points.items():
-        wrong = point[1] * corner.sign < 0.0 or (point[1] == 0.0 and name == "wheel_centre")
+        wrong = point[1] * corner.sign < (LEAST_LEVER if name == "wheel_centre" else 0.0)
         if name != "tie_rod_inner" and wrong:
             is_there = frame.left_is() if corner.side == "left" else frame.right_is()
             raise InputError(

@@ -6,6 +6,7 @@ import csv
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass
+from statistics import median
 
 import numpy as np
 
@@ -110,13 +111,13 @@ def read_point_table(text: str, file: str) -> PointTable:
             try:
                 reading = _read(rows, word, decimal, file)
             except _UnreadableError as error:
-                complaints.append((min(4, *(len(cells) for _, cells in rows)), error.line, str(error)))
+                complaints.append((min(4, int(median(len(cells) for _, cells in rows))), error.line, str(error)))
                 continue
             if not any(_same(reading, other) for other in readings):
                 readings.append(reading)
     if not readings:
         cells, _, sentence = max(complaints, key=lambda complaint: complaint[:2])
-        if cells < 4:
+        if cells < 3:
             sentence = (
                 f"{file}: line {lines[0][0]} is not a name and three numbers; "
                 "separate the cells by comma, semicolon, tab or spaces"
