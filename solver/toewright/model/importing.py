@@ -272,13 +272,13 @@ def _conclusions(
 
 def _mirror_sentence(file: str, found: _Candidate) -> str:
     if len(found.sides) > 1:
-        which, remedy = "corners that are named", "or exchange left and right in the names"
+        which, remedy = "with the sides as named", "exchange left and right in the names if they are exchanged"
     else:
         other = "right" if found.sides[0] == "left" else "left"
-        which, remedy = f"{found.sides[0]} corner", f"or --side {other} if these are the {other} corner's points"
+        which, remedy = f"as the {found.sides[0]} corner", f"--side {other} if these are the {other} corner's points"
     return (
-        f"{file}: read as the {which}, its axes would be left-handed ({found.axes.text}), a mirror image: give "
-        f"--axes={found.axes.text} if the table's axes are left-handed, {remedy}"
+        f"{file}: read {which}, its axes would be left-handed, a mirror image: give --axes={found.axes.text} if the table's axes are "
+        f"left-handed, or {remedy}, or correct the names if upper and lower or front and rear are exchanged"
     )
 
 
