@@ -1091,6 +1091,34 @@ def _finish(P, x, at, contact, a, pose):
 
 
 @compiled
+def settle(packed, x, iterations):
+    """Newton on packed rows (PACKED,) at zero rack and travel from pose x (6,): the last step (mm), NaN where it diverges.
+
+    For rows that were changed after packing, such as a pivot that was shimmed while the link kept its length.
+    """
+    a = np.empty((5, 8))
+    lever = packed[LEVER]
+    step = math.nan
+    for _ in range(iterations):
+        _system(packed, x, 0.0, 0.0, 0.0, a)
+        if _eliminate(a) == 0.0:
+            return math.nan
+        e0, e1, e2 = _gibbs_slope(x[2], x[3], x[4], a[2, 5], a[3, 5], a[4, 5])
+        x[0] += a[0, 5]
+        x[1] += a[1, 5]
+        x[2] += e0
+        x[3] += e1
+        x[4] += e2
+        spin = a[2, 5] ** 2 + a[3, 5] ** 2 + a[4, 5] ** 2
+        step = math.sqrt(a[0, 5] ** 2 + a[1, 5] ** 2 + lever * lever * spin)
+        if not step < 1e6:
+            return math.nan
+        if step < WALK_STEP_TOLERANCE * lever:
+            break
+    return step
+
+
+@compiled
 def walk_poses(designs, rack, travel, contact, poses, status, iterations, ends):
     """Poses by the scalar walker from the design position: rack first, then travel; where that stops, travel first.
 
