@@ -14,7 +14,7 @@ from toewright_cli.console import print_remarks, print_table, say
 from toewright_cli.options import Force
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Mapping, Sequence
 
     from toewright.core.types import FloatArray
     from toewright.model.importing import Origin, Reading
@@ -186,7 +186,7 @@ def import_points(
     )
     checked = loads(text, file=str(points))
     write_text(out_file, text, force=force)
-    _show(readings, loaded_radius)
+    _show(readings, theirs, loaded_radius)
     if len(readings) == 1 and first.side == "right":
         say("The right corner was read; the file holds its mirror image as [left], and no [right].")
     if stroke is None:
@@ -223,27 +223,28 @@ def _origin(text: str | None) -> Origin:
     return values
 
 
-def _show(readings: Sequence[Reading], loaded_radius: float) -> None:
+def _show(readings: Sequence[Reading], names: Mapping[str, str], loaded_radius: float) -> None:
     from toewright.model.import_report import sanity_list
+    from toewright.views.words import number
 
-    for number, reading in enumerate(readings):
-        if number == 0 or reading.axes != readings[0].axes or reading.concluded != readings[0].concluded:
+    for place, reading in enumerate(readings):
+        if place == 0 or reading.axes != readings[0].axes or reading.concluded != readings[0].concluded:
             start = ", ".join(f"{value:g}" for value in reading.origin)
             say(f"Axes {reading.axes.text}, unit {reading.unit}, the car's origin at {start} in the table.")
             found = "; ".join(reading.concluded)
             say(f"Concluded: {found}." if found else "Nothing had to be concluded: all was given.")
         say(f"\n{reading.corner.side} corner, {reading.corner.kind}", style="bold")
         rows = [
-            [
-                name if label == name else f"{name} = {label!r}",
-                *(f"{value:g}" for value in raw),
-                *(f"{value:+.2f}" for value in reading.corner.points[name]),
-            ]
-            for name, (label, raw) in reading.sources.items()
+            [name, *(f"{value:g}" for value in raw), *(number(value, 2) for value in reading.corner.points[name])]
+            for name, (_, raw) in reading.sources.items()
         ]
         columns = [f"{letter} ({reading.unit})" for letter in "xyz"]
-        print_table(["point = in the table", *columns, "forward (mm)", "left (mm)", "up (mm)"], rows, right=range(1, 7))
+        print_table(["point", *columns, "forward (mm)", "left (mm)", "up (mm)"], rows, right=range(1, 7))
+        renamed = [f"{label!r} is {name}" for name, (label, _) in reading.sources.items() if label in names]
+        if renamed:
+            say(f"By --names: {', '.join(renamed)}.")
     if readings[0].unused:
         say(f"Not taken from the table: {', '.join(readings[0].unused)}.")
     checks = sanity_list(readings, loaded_radius)
+    say("")
     print_table(["sanity list", "found", ""], [[c.what, c.found, "usual" if c.usual else "ODD: check"] for c in checks])

@@ -7,13 +7,13 @@ from typing import Annotated
 
 import typer
 
-from toewright_cli.console import print_json
+from toewright_cli.console import print_json, warn
 from toewright_cli.options import Force
 
 
 def schema(
     out_file: Annotated[
-        Path | None, typer.Option("--out", "-o", metavar="FILE", help="Write to a file, not stdout.")
+        Path | None, typer.Option("--out", "-o", metavar="FILE", help="Write to a file (.json), not to stdout.")
     ] = None,
     force: Force = False,
 ) -> None:
@@ -22,8 +22,11 @@ def schema(
 
     from toewright.model.schema import json_schema
     from toewright.model.writing import write_text
+    from toewright_cli.outputs import check_out
 
     if out_file is None:
         print_json(json_schema())
-    else:
-        write_text(out_file, json.dumps(json_schema(), indent=2) + "\n", force=force)
+        return
+    check_out(out_file, force, (".json",))
+    write_text(out_file, json.dumps(json_schema(), indent=2) + "\n", force=force)
+    warn(f"wrote {out_file}")

@@ -63,7 +63,7 @@ def _of_corner(reading: Reading, loaded_radius: float) -> list[Sanity]:
                 Sanity(f"{arm} arm near level, not at full droop", f"{_tilt(angle)} outward", abs(angle) <= STEEP)
             )
     outboard = float((centre[1] - lower[1]) * corner.sign)
-    rows.append(Sanity("wheel centre outboard of the lower ball joint", f"{outboard:+.1f} mm", outboard > 0.0))
+    rows.append(Sanity("wheel centre outboard of lower ball joint", f"{outboard:+.1f} mm", outboard > 0.0))
     return rows
 
 
@@ -80,7 +80,7 @@ def _order(corner: Corner) -> list[Sanity]:
             rows.append(Sanity(f"{arm} pivots inboard of the ball joint", f"by {inside:.1f} mm", inside > 0.0))
     top = "upper_ball_joint" if corner.kind == "double-wishbone" else "strut_top_mount"
     rise = float(points[top][2] - points["lower_ball_joint"][2])
-    rows.append(Sanity(f"{top.replace('_', ' ')} above the lower ball joint", f"{rise:+.1f} mm", rise > 0.0))
+    rows.append(Sanity(f"{top.replace('_', ' ')} above lower ball joint", f"{rise:+.1f} mm", rise > 0.0))
     rod = points["tie_rod_outer"] - points["tie_rod_inner"]
     slope = float(np.degrees(np.arctan2(rod[2], np.hypot(rod[0], rod[1]))))
     rows.append(
