@@ -23,8 +23,12 @@ ITERATIONS = 20
 SETTLED = 1e-8
 """Largest last Newton step (mm) of a settled pose."""
 
-_ROW_OF_JOINT = {"upper_ball_joint": (0, 1), "lower_ball_joint": (2, 3), "tie_rod_outer": (4,)}
-_ROW_OF_BASE = {
+_ROW_OF_JOINT: Mapping[str, tuple[int, ...]] = {
+    "upper_ball_joint": (0, 1),
+    "lower_ball_joint": (2, 3),
+    "tie_rod_outer": (4,),
+}
+_ROW_OF_BASE: Mapping[str, Mapping[str, tuple[int, ...]]] = {
     "double-wishbone": {
         "upper_pivot_front": (0,),
         "upper_pivot_rear": (1,),
@@ -39,14 +43,9 @@ _ROW_OF_BASE = {
         "tie_rod_inner": (4,),
     },
 }
-MOVABLE = {
-    kind: (
-        *_ROW_OF_BASE[kind],
-        *(("upper_ball_joint",) if kind == "double-wishbone" else ()),
-        "lower_ball_joint",
-        "tie_rod_outer",
-    )
-    for kind in layout.KINDS
+MOVABLE: Mapping[str, tuple[str, ...]] = {
+    "double-wishbone": (*_ROW_OF_BASE["double-wishbone"], "upper_ball_joint", "lower_ball_joint", "tie_rod_outer"),
+    "strut": (*_ROW_OF_BASE["strut"], "lower_ball_joint", "tie_rod_outer"),
 }
 """Points that a workshop can move, by corner kind."""
 
