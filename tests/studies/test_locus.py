@@ -59,7 +59,7 @@ def test_places_are_solved_exactly():
 
 
 def test_best_height_is_the_minimum():
-    found = locus(FRONT, travel=TRAVEL, reach=30.0, places=61)
+    found = locus(FRONT, travel=TRAVEL, reach=40.0, places=61)
     middle = 30
     exact = scipy.optimize.minimize_scalar(
         lambda z: worst_bump_steer(FRONT, np.array([found.joint[0], found.first[middle], z])),

@@ -11,6 +11,7 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "sweep": ("sweep", "sweep"),
     "turn": ("turn", "turn"),
     "ride": ("ride", "ride"),
+    "locus": ("locus", "locus"),
     "schema": ("schema", "schema"),
 }
 """Each command: its module here and the function in it; ``toewright --help`` lists them in this order."""

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 import numpy as np
 
@@ -22,6 +22,9 @@ from toewright.kinematics.sweep import check_positions, default_travel
 from toewright.model.axle import Axle
 from toewright.model.errors import InputError
 
+if TYPE_CHECKING:
+    import xarray as xr
+
 Plane = Literal["front", "top"]
 
 PLANES: dict[str, tuple[str, str]] = {"front": ("y", "z"), "top": ("y", "x")}
@@ -29,6 +32,9 @@ PLANES: dict[str, tuple[str, str]] = {"front": ("y", "z"), "top": ("y", "x")}
 
 GRID = 61
 """Places along each coordinate of the plane."""
+
+ACROSS = 0.25
+"""Reach in the plane's second coordinate as a share of the reach in y: bump steer hangs on height far more than on length."""
 
 FINE = 81
 """Places on the finer line around each best place."""
@@ -92,6 +98,27 @@ class Locus:
     low: FloatArray
     high: FloatArray
     held: HeldPath
+
+    def to_xarray(self) -> xr.Dataset:
+        """The field and the best places as an xarray Dataset with units."""
+        import xarray as xr
+
+        y, across = (f"tie_rod_inner_{letter}" for letter in PLANES[self.plane])
+        mm = {"units": "mm"}
+        deg = {"units": "deg", "long_name": "largest |bump steer| over the travel, per wheel"}
+        data = {
+            "bump_steer_most": (("rack_travel", y, across), self.worst, deg),
+            "best": (y, self.best, mm),
+            "best_bump_steer": (y, self.best_worst, deg),
+            "low": (y, self.low, mm),
+            "high": (y, self.high, mm),
+        }
+        coords = {
+            "rack_travel": ("rack_travel", self.rack, mm),
+            y: (y, self.first, mm),
+            across: (across, self.second, mm),
+        }
+        return xr.Dataset(data, coords=coords, attrs={"side": self.side, "limit_deg": self.limit})
 
 
 def held_path(axle: Axle, side: str, travel: FloatArray, rack: float = 0.0) -> HeldPath:
@@ -159,7 +186,7 @@ def locus(
         rack: rack positions, mm; the first decides ``best``.
         travel: (T,) mm, ascending; a usual range when not given.
         limit: deg of bump steer that is still accepted, either way.
-        reach: places are tried this far either way, mm.
+        reach: places are tried this far either way in y, mm, and a quarter of it in the other coordinate.
         places: how many along each coordinate.
 
     Raises:
@@ -172,11 +199,12 @@ def locus(
         raise InputError(f"limit {limit:g} deg and reach {reach:g} mm must be above 0")
     at_travel = check_positions(travel, default_travel(axle), "travel")
     at_rack = np.asarray(rack, dtype=float)
+    held = held_path(axle, side, at_travel, float(at_rack[0]))
     design = design_vector(axle, side)
     joint = design[INNER].copy()
     first = joint[1] + np.linspace(-reach, reach, places)
     across = "xyz".index(PLANES[plane][1])
-    second = joint[across] + np.linspace(-reach, reach, places)
+    second = joint[across] + np.linspace(-ACROSS * reach, ACROSS * reach, places)
     grid = np.tile(second, (places, 1))
     field = _solve_places(design, first, grid, across, at_rack, at_travel)
     now = solve_batch(design[np.newaxis], at_rack, at_travel, columns=("bump_steer",)).values[0, ..., 0]
@@ -200,7 +228,7 @@ def locus(
         limit=limit,
         low=low,
         high=high,
-        held=held_path(axle, side, at_travel, float(at_rack[0])),
+        held=held,
     )
 
 
