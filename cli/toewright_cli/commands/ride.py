@@ -11,6 +11,7 @@ from toewright.views.toe import ToeUnit
 from toewright_cli.console import print_definitions, print_json, print_remarks
 from toewright_cli.options import AsJson, Explain, Force, HardpointFile, Out, TravelList, parse_list, parse_number
 from toewright_cli.outputs import check_out, save_results
+from toewright_cli.pictures import FINE, Overlay, Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
 from toewright_cli.toe import ToeDiameterOption, ToeUnitOption, toe_scale
 
@@ -49,6 +50,8 @@ def ride(
     toe_unit: ToeUnitOption = None,
     toe_diameter: ToeDiameterOption = None,
     out_file: Out = None,
+    plot: Plot = None,
+    overlay: Overlay = None,
     force: Force = False,
     as_json: AsJson = False,
     explain: Explain = False,
@@ -58,6 +61,7 @@ def ride(
     Example: toewright ride hardpoints/marten_front.toml --motion roll --roll=-2:2:9
     """
     check_out(out_file, force)
+    overlaid = check_plot(plot, overlay, force)
     from toewright.kinematics.riding import MOTIONS
     from toewright.kinematics.riding import ride as solve
     from toewright.model.errors import InputError
@@ -94,6 +98,22 @@ def ride(
     if out_file is not None:
         save_results(
             out_file, force, lambda: long_table(ridden), lambda: table_document(axle, ridden), ridden.to_xarray
+        )
+    if plot is not None:
+        from toewright.kinematics.riding import default_roll
+        from toewright.kinematics.sweep import default_travel
+        from toewright.views.plots_ride import ride_figure
+
+        motions = MOTIONS if motion is None else [motion.value]
+        fine = default_travel(axle, FINE) if at_travel is None else at_travel
+        tilt = default_roll(FINE) if at_roll is None else at_roll
+        shown = [axle, *overlaid]
+        draw(
+            plot,
+            force,
+            lambda: ride_figure(
+                shown, [solve(of, motions, travel=fine, roll=tilt, rack=at_rack, side=side.value) for of in shown]
+            ),
         )
     if as_json:
         print_json(ride_document(axle, ridden, scale))

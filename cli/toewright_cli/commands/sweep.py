@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 from toewright.views.toe import ToeUnit
 from toewright_cli.console import print_definitions, print_json, print_remarks, warn
 from toewright_cli.options import (
@@ -20,8 +22,13 @@ from toewright_cli.options import (
     parse_rack,
 )
 from toewright_cli.outputs import check_out, save_results
+from toewright_cli.pictures import FINE, Overlay, Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
 from toewright_cli.toe import ToeDiameterOption, ToeTotalOption, ToeUnitOption, toe_scale
+
+if TYPE_CHECKING:
+    from toewright.kinematics.maps import CornerMaps
+    from toewright.model.axle import Axle
 
 MOST_POSES = 1_000_000
 """Poses of one sweep; each takes about a kilobyte while it is worked on."""
@@ -37,6 +44,8 @@ def sweep(
     toe_diameter: ToeDiameterOption = None,
     toe_total: ToeTotalOption = False,
     out_file: Out = None,
+    plot: Plot = None,
+    overlay: Overlay = None,
     force: Force = False,
     as_json: AsJson = False,
     explain: Explain = False,
@@ -46,6 +55,7 @@ def sweep(
     Example: toewright sweep hardpoints/marten_front.toml --travel -25:25:11 --toe-unit mm --out map.csv
     """
     check_out(out_file, force)
+    overlaid = check_plot(plot, overlay, force)
     from toewright.kinematics.summary import RANGED, bump_steer, ranges
     from toewright.kinematics.sweep import default_rack, default_travel
     from toewright.kinematics.sweep import sweep as solve
@@ -78,6 +88,17 @@ def sweep(
     if out_file is not None:
         with working(f"writing {out_file}"):
             save_results(out_file, force, lambda: long_table(maps), lambda: maps_document(axle, maps), maps.to_xarray)
+    if plot is not None:
+        from toewright.views.plots_sweep import sweep_figure
+
+        fine = default_travel(axle, FINE) if at_travel is None else at_travel
+
+        def picture(of: Axle) -> CornerMaps:
+            at = default_rack(of, FINE) if at_rack is None or of.rack is None else at_rack
+            return solve(of, at, fine, travel_at=travel_at.value, sides=side.sides)
+
+        shown = [axle, *overlaid]
+        draw(plot, force, lambda: sweep_figure(shown, [picture(of) for of in shown]))
     tables = bump_steer(maps, total=toe_total)
     of_sides = {name: ranges(maps, name) for name in maps.sides}
     if as_json:

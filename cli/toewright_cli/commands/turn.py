@@ -3,14 +3,19 @@
 from __future__ import annotations
 
 from enum import StrEnum
-from typing import Annotated
+from typing import TYPE_CHECKING, Annotated
 
 import typer
 
 from toewright_cli.console import print_definitions, print_json, print_remarks
 from toewright_cli.options import AsJson, Explain, Force, HardpointFile, Out, RackList, parse_number, parse_rack
 from toewright_cli.outputs import check_out, save_results
+from toewright_cli.pictures import FINE, Overlay, Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
+
+if TYPE_CHECKING:
+    from toewright.kinematics.turning import TurnMaps
+    from toewright.model.axle import Axle
 
 
 class AckermannChoice(StrEnum):
@@ -44,6 +49,8 @@ def turn(
         ),
     ] = 0.0,
     out_file: Out = None,
+    plot: Plot = None,
+    overlay: Overlay = None,
     force: Force = False,
     as_json: AsJson = False,
     explain: Explain = False,
@@ -53,6 +60,7 @@ def turn(
     Example: toewright turn hardpoints/marten_front.toml --rack -30:30:13 --ackermann single-track
     """
     check_out(out_file, force)
+    overlaid = check_plot(plot, overlay, force)
     from toewright.kinematics.limits import limits
     from toewright.kinematics.turning import turn as solve
     from toewright.model.errors import InputError
@@ -84,6 +92,16 @@ def turn(
         save_results(
             out_file, force, lambda: long_table(turned), lambda: table_document(axle, turned), turned.to_xarray
         )
+    if plot is not None:
+        from toewright.kinematics.sweep import default_rack
+        from toewright.views.plots_turn import turn_figure
+
+        def picture(of: Axle) -> TurnMaps:
+            at = default_rack(of, FINE) if at_rack is None else parse_rack(rack, of)
+            return solve(of, at, travel=height or 0.0, roll=angle, ackermann=ackermann.value, other_rack=ratio or 0.0)
+
+        shown = [axle, *overlaid]
+        draw(plot, force, lambda: turn_figure(shown, [picture(of) for of in shown]))
     if as_json:
         print_json(turn_document(axle, turned, bounds, held))
         return

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from string import ascii_uppercase
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
@@ -71,3 +72,26 @@ def axle_words(axle: Axle) -> str:
     if axle.vehicle.wheelbase is not None:
         parts.append(f"wheelbase {axle.vehicle.wheelbase:g} mm")
     return ", ".join(parts)
+
+
+def case_labels(axles: Sequence[Axle], longest: int = 48) -> list[str]:
+    """Short names of files for legends: the title, with a letter in front where there are several; never longer than asked.
+
+    Files of one title are told apart by their names.
+    """
+    alike = len({axle.title for axle in axles}) < len(axles)
+    found = []
+    for letter, axle in zip(ascii_uppercase, axles, strict=False):
+        name = axle.path.name if alike and axle.path is not None else axle.title
+        name = " ".join(name.split())
+        name = name if len(name) <= longest else name[: longest - 3].rstrip() + "..."
+        found.append(f"{letter}: {name}" if len(axles) > 1 else name)
+    return found
+
+
+def trace_words(axle: Axle) -> str:
+    """Where numbers come from: file name and the beginning of its hash, with the version of the tool."""
+    from toewright import __version__
+
+    file = "in memory" if axle.path is None else axle.path.name
+    return f"{file}{f' (sha256 {axle.sha256[:12]})' if axle.sha256 else ''}, toewright {__version__}"
