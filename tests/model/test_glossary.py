@@ -1,5 +1,7 @@
 from __future__ import annotations
 
+from pathlib import Path
+
 import pytest
 
 from toewright.model import GLOSSARY, Quantity, quantity
@@ -88,3 +90,13 @@ def test_unknown_name() -> None:
         quantity("toe_out")
     with pytest.raises(KeyError):
         column_units(["toe_out"])
+
+
+def test_documents_do_not_repeat_it() -> None:
+    root = Path(__file__).parents[2]
+    for document in ("README.md", "DEVELOPERS.md"):
+        text = " ".join((root / document).read_text(encoding="utf-8").split())
+        repeated = [
+            entry.name for entry in GLOSSARY.values() if len(entry.definition) > 60 and entry.definition in text
+        ]
+        assert repeated == [], document

@@ -69,16 +69,19 @@ def read_text(path: Path) -> str:
 
 def _read_bytes(path: Path) -> bytes:
     try:
-        size = path.stat().st_size
-        if size > LARGEST_FILE:
-            raise InputError(f"{path}: is {size} bytes; a file of points has a few thousand: is it the right file?")
-        return path.read_bytes()
+        with path.open("rb") as stream:
+            raw = stream.read(LARGEST_FILE + 1)
     except IsADirectoryError as error:
         raise InputError(f"{path}: is a folder; give a file") from error
     except FileNotFoundError as error:
         raise InputError(f"{path}: there is no such file; check the name and the folder") from error
     except OSError as error:
         raise InputError(f"{path}: can't be read ({error.strerror}); check its rights") from error
+    if len(raw) > LARGEST_FILE:
+        raise InputError(
+            f"{path}: is larger than {LARGEST_FILE} bytes; a file of points has a few thousand: is it the right file?"
+        )
+    return raw
 
 
 def _decode(raw: bytes, path: Path) -> str:

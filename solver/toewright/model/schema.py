@@ -4,11 +4,19 @@ from __future__ import annotations
 
 from typing import Annotated, Any, Literal
 
-from pydantic import BaseModel, ConfigDict, Field
+from pydantic import AfterValidator, BaseModel, ConfigDict, Field
 
 LARGEST = 1e6
 """No number of a car is larger, in any unit."""
 
+
+def _one_line(text: str) -> str:
+    if not text.isprintable():
+        raise ValueError("is not one line of printable text; write it in one line")
+    return text
+
+
+Title = Annotated[str, Field(max_length=200), AfterValidator(_one_line)]
 Number = Annotated[float, Field(ge=-LARGEST, le=LARGEST, allow_inf_nan=False)]
 Positive = Annotated[float, Field(gt=0.0, le=LARGEST, allow_inf_nan=False)]
 Point = Annotated[list[Number], Field(min_length=3, max_length=3)]
@@ -100,7 +108,7 @@ class HardpointFile(Table):
     """One file, one axle."""
 
     file_schema: Literal[1] = Field(1, alias="schema", description="version of this format")
-    title: str = ""
+    title: Title = ""
     axes: Literal["iso-8855", "sae-j670"] = Field(
         "iso-8855", description="iso-8855: x forward, y left, z up; sae-j670: x forward, y right, z down"
     )

@@ -121,6 +121,8 @@ def _what(problem: ErrorDetails, where: list[str], missing: Sequence[str]) -> st
     if kind in limits:
         word, limit = limits[kind]
         return f"{key}{shown}: must be {word} {_plain(context.get(limit))}; correct the number or its unit"
+    if kind == "value_error":
+        return f"{key}{shown}: {context.get('error')}"
     return f"{key}{shown}: {_lower(problem['msg'])}; correct it"
 
 
