@@ -12,6 +12,8 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "turn": ("turn", "turn"),
     "ride": ("ride", "ride"),
     "locus": ("locus", "locus"),
+    "compare": ("compare", "compare"),
+    "shims": ("shims", "shims"),
     "schema": ("schema", "schema"),
 }
 """Each command: its module here and the function in it; ``toewright --help`` lists them in this order."""

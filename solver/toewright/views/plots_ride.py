@@ -156,6 +156,12 @@ def _panels(of: _Rides) -> list[_Panel]:
     return found
 
 
+def draw_ride_curves(axes: Axes, axles: Sequence[Axle], rides: Sequence[RideMaps], motion: str, name: str) -> None:
+    """One column of one motion, of all files."""
+    _Rides(axles, rides).curves(axes, motion, [(name, "")])
+    axes.set_ylabel(axis_label(name))
+
+
 def ride_figure(axles: Sequence[Axle], rides: Sequence[RideMaps]) -> Figure:
     """Toe and camber over bump, roll steer and roll-centre path, of one or several files; as many panels as there are motions.
 

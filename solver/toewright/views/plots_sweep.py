@@ -106,7 +106,7 @@ def _draw_zero(axes: Axes, rack: FloatArray, travel: FloatArray, field: FloatArr
     axes.clabel(zero, fmt="0", fontsize=8.5, colors=MAP_INK, inline_spacing=3)
 
 
-def _panel_maps(
+def panel_maps(
     figure: Figure | SubFigure, titles: Sequence[str], maps: Sequence[CornerMaps], fields: Sequence[FloatArray]
 ) -> None:
     """Map panels, two in a row, with one colour bar."""
@@ -166,7 +166,8 @@ def _draw_curves(
     axes.set_ylabel(TOE_CHANGE if name == "bump_steer" else axis_label(name))
 
 
-def _panel_curves(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Sequence[CornerMaps], side: str) -> None:
+def panel_curves(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Sequence[CornerMaps], side: str) -> None:
+    """Toe change and camber over wheel travel beside each other, with one legend."""
     left, right = figure.subplots(1, 2)
     labels = case_labels(axles)
     _draw_curves(left, axles, maps, "bump_steer", side, labels)
@@ -188,7 +189,7 @@ def _panel_curves(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Seque
         )
 
 
-def _panel_over_rack(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Sequence[CornerMaps], side: str) -> None:
+def panel_over_rack(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Sequence[CornerMaps], side: str) -> None:
     """Steer angle and camber over rack travel, for a sweep at one wheel travel."""
     for axes, name in zip(figure.subplots(1, 2), ("steer_angle", "camber"), strict=True):
         for k, (of, label) in enumerate(zip(maps, case_labels(axles), strict=True)):
@@ -246,12 +247,12 @@ def sweep_figure(axles: Sequence[Axle], maps: Sequence[CornerMaps]) -> Figure:
             names = [labels[k] if len(axles) > 1 else "Bump steer" for k, _ in panels]
             titles = [f"{name}, {side} wheel{mirrored}" for name, (_, side) in zip(names, panels, strict=True)]
             fields = [maps[k]["bump_steer"][maps[k].side_index(side)] for k, side in panels]
-            _panel_maps(parts[0], titles, [maps[k] for k, _ in panels], fields)
+            panel_maps(parts[0], titles, [maps[k] for k, _ in panels], fields)
         for part, side in zip(parts[len(heights) - len(sides) :], sides, strict=True):
             if over_travel:
-                _panel_curves(part, axles, maps, side)
+                panel_curves(part, axles, maps, side)
             else:
-                _panel_over_rack(part, axles, maps, side)
+                panel_over_rack(part, axles, maps, side)
         return figure
 
 

@@ -111,6 +111,14 @@ def _draw_circles(axes: Axes, axles: Sequence[Axle], turns: Sequence[TurnMaps]) 
     axes.set_title("Turning circle")
 
 
+def draw_error(axes: Axes, axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> None:
+    """Ackermann error over mean steer."""
+    _draw_over_steer(axes, axles, turns, [t["ackermann_error"] for t in turns])
+    zero_lines(axes)
+    axes.set_ylabel(axis_label("ackermann_error").replace(" (", "\n("))
+    axes.set_title("Ackermann error")
+
+
 def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> Figure:
     """Steer angles with the ideal, Ackermann error and percent, turning circles and slip, of one or several files.
 
@@ -135,10 +143,7 @@ def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> Figure:
         panels = figure.subplot_mosaic([["steer", "steer"], ["error", "percent"], ["circle", "slip"]])
         _draw_steer(panels["steer"], turns, labels)
         error, percent, slip = panels["error"], panels["percent"], panels["slip"]
-        _draw_over_steer(error, axles, turns, [t["ackermann_error"] for t in turns])
-        zero_lines(error)
-        error.set_ylabel(axis_label("ackermann_error"))
-        error.set_title("Ackermann error")
+        draw_error(error, axles, turns)
         _draw_over_steer(percent, axles, turns, [t["ackermann_percent"] for t in turns])
         low, high = percent.get_ylim()
         percent.set_ylim(min(low, -8.0), max(high, 108.0))

@@ -11,12 +11,18 @@ if TYPE_CHECKING:
 
     from toewright.model.axle import Axle
 
-SHOWN_RATES = {
+READ_AS = {
     "bump_steer_rate": ("deg/m", 1000.0, 2),
     "camber_gain": ("deg/m", 1000.0, 2),
     "steer_rate": ("deg/mm", 1.0, 4),
+    "roll_steer": ("deg/deg", 1.0, 4),
+    "swing_arm_left": ("mm", 1.0, 0),
+    "swing_arm_right": ("mm", 1.0, 0),
+    "turn_radius": ("m", 0.001, 2),
+    "kerb_circle": ("m", 0.001, 2),
+    "wall_circle": ("m", 0.001, 2),
 }
-"""Unit, factor from the glossary's unit, and decimals in which people read a rate."""
+"""Unit, factor from the glossary's unit, and decimals in which people read a quantity; all others as they are, with two."""
 
 _UNSIGNED = ("never negative", "90 best")
 
@@ -34,7 +40,7 @@ def figure(name: str, value: float) -> tuple[str, str, str]:
     from toewright.model.glossary import quantity
 
     entry = quantity(name)
-    unit, factor, decimals = SHOWN_RATES.get(name, (entry.unit, 1.0, 2))
+    unit, factor, decimals = READ_AS.get(name, (entry.unit, 1.0, 2))
     return number(value * factor, decimals, sign=not entry.sign.startswith(_UNSIGNED)), unit, entry.sign
 
 
