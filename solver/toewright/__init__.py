@@ -23,6 +23,8 @@ if TYPE_CHECKING:
     from toewright.model.axle import Axle, Corner
     from toewright.model.errors import InputError
     from toewright.model.files import load, loads
+    from toewright.studies.locus import Locus, locus
+    from toewright.studies.shims import ShimTable, shims
 
 __version__ = "0.1.0"
 
@@ -43,6 +45,10 @@ _HOMES = {
     "ride": "toewright.kinematics.riding",
     "TurnMaps": "toewright.kinematics.turning",
     "turn": "toewright.kinematics.turning",
+    "Locus": "toewright.studies.locus",
+    "locus": "toewright.studies.locus",
+    "ShimTable": "toewright.studies.shims",
+    "shims": "toewright.studies.shims",
     "sweep": "toewright.kinematics.sweep",
 }
 

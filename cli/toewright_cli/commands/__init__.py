@@ -14,6 +14,7 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "locus": ("locus", "locus"),
     "compare": ("compare", "compare"),
     "shims": ("shims", "shims"),
+    "draw": ("draw", "draw"),
     "schema": ("schema", "schema"),
 }
 """Each command: its module here and the function in it; ``toewright --help`` lists them in this order."""

@@ -21,7 +21,7 @@ def table_document(axle: Axle, result: ResultTable) -> dict[str, Any]:
     """Everything, for a JSON file: units, signs, notes and each column as a list."""
     return {
         **source_of(axle),
-        "quantities": meanings(name for name in result.names if name != "motion"),
+        "quantities": meanings(name for name in result.names if name not in result.labels),
         "notes": list(result.notes),
         **{name: result.column(name) for name in result.names},
     }

@@ -140,6 +140,7 @@ class Axle:
         path, sha256: the file it came from and the hash of its bytes; None for an axle made in memory.
         remarks: what looked odd on reading, each one sentence.
         extra: the file's tables ``targets``, ``tolerance`` and ``adjusters`` as read.
+        axes, length_unit: what the file is written in; ``extra`` is in these, everything else in ISO 8855 and mm.
     """
 
     title: str
@@ -154,6 +155,8 @@ class Axle:
     sha256: str | None = None
     remarks: tuple[str, ...] = ()
     extra: Mapping[str, Any] = field(default_factory=dict)
+    axes: str = "iso-8855"
+    length_unit: str = "mm"
 
     def corner(self, side: str) -> Corner:
         """The corner on one side.

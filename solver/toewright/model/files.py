@@ -141,6 +141,8 @@ def _build(text: str, file: str, folder: Path) -> Axle:
         right=right,
         symmetric=written.right is None,
         extra={key: table for key in EXTRA_TABLES if (table := getattr(written, key)) is not None},
+        axes=written.axes,
+        length_unit=written.length_unit,
     )
     frame = FileFrame(file, written.axes, written.length_unit)
     check_size(axle, frame)

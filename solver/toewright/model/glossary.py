@@ -184,7 +184,19 @@ _LIMITS: tuple[_Row, ...] = (
     ("largest_steer_angle", "", "deg", "largest steer angle", "to the left +", "the steer_angle of largest magnitude, over the whole map of both wheels"),
 )  # fmt: skip
 
-_TABLE: tuple[_Row, ...] = (*_MOTION, *_CORNER, *_VECTORS, *_LINKS, *_TURNING, *_RIDING, *_SIDES, *_LIMITS)
+_WORKSHOP: tuple[_Row, ...] = (
+    ("adjuster", "", "-", "adjuster", "", "what the workshop turns or shims, by its name in the file"),
+    ("adjustment", "", "-", "adjustment", "in the direction declared +", "mm of displacement, or turns of a thread, from how the car is drawn"),
+    ("toe_before", "", "deg", "toe before it is set again", "toe-in +", "toe_in at the ride height after the adjustment, the tie rod untouched"),
+    ("rod_longer", "", "mm", "tie rod longer", "longer +", "change of the tie rod's length that sets the declared static toe again"),
+    ("rod_turns", "", "-", "turns of the tie rod", "longer +", "rod_longer over the thread's mm for one turn"),
+    ("toe_in_set", "", "deg", "toe-in as set", "toe-in +", "toe_in at the ride height when all is done"),
+    ("bump_steer_low", "", "deg", "bump steer, full rebound", "toe-in +", "bump_steer from the ride height to the lowest travel"),
+    ("bump_steer_high", "", "deg", "bump steer, full bump", "toe-in +", "bump_steer from the ride height to the highest travel"),
+    ("bump_steer_most", "", "deg", "largest bump steer", "never negative", "largest |bump_steer| from the ride height over the travel"),
+)  # fmt: skip
+
+_TABLE: tuple[_Row, ...] = (*_MOTION, *_CORNER, *_VECTORS, *_LINKS, *_TURNING, *_RIDING, *_SIDES, *_LIMITS, *_WORKSHOP)
 
 GLOSSARY: Mapping[str, Quantity] = {row[0]: Quantity(*row) for row in _TABLE}
 """Every quantity by name."""

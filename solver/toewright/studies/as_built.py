@@ -13,7 +13,9 @@ import numpy as np
 
 from toewright.core import kernels, layout
 from toewright.core.types import FloatArray
+from toewright.kinematics.batch import solve_poses
 from toewright.kinematics.joints import UPRIGHT_POINTS, rotation_matrices
+from toewright.kinematics.status import STATUS_NAMES
 from toewright.model.errors import InputError
 
 STEPS = 8
@@ -119,6 +121,22 @@ def _settled_design(design: FloatArray, kind: str, moved: Mapping[str, FloatArra
     new[layout.TOE_IN] = -side * np.degrees(np.arctan2(-spin[0], spin[1]))
     new[layout.CAMBER] = -side * np.degrees(np.arcsin(spin[2]))
     return new
+
+
+def at_height(design: FloatArray, travel: float) -> FloatArray:
+    """The corner as it stands at a wheel travel (mm): the same parts, with the pose there as the new design position.
+
+    Raises:
+        InputError: where the wheel can't get there.
+    """
+    if travel == 0.0:
+        return design.copy()
+    found = solve_poses(design[np.newaxis], np.zeros(1), np.array([travel]))
+    if found.status[0, 0] != layout.OK:
+        raise InputError(
+            f"the wheel can't stand at {travel:+g} mm of travel: {STATUS_NAMES[found.status[0, 0]]}; ask for less"
+        )
+    return _settled_design(design, layout.KINDS[int(design[layout.KIND])], {}, found.poses[0, 0])
 
 
 def rod_for_toe(design: FloatArray, toe_in: float) -> tuple[FloatArray, float]:
