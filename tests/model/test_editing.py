@@ -152,6 +152,7 @@ def test_dumps_of_every_key(tmp_path: Path) -> None:
     assert 'other_axle = "cars/sub/rear.toml"' in (tmp_path / "copy.toml").read_text(encoding="utf-8")
     one, other = comparable(axle), comparable(again)
     assert other["title"] == one["title"] == 'Pole"cat \\ äöü'
+    assert (again.axes, again.length_unit) == (axle.axes, axle.length_unit) == ("sae-j670", "in")  # extra is in these
     for key in ("kinds", "symmetric", "extra"):
         assert other[key] == one[key], key
     assert axle.rack is not None

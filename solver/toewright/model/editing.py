@@ -14,11 +14,10 @@ from numpy.typing import ArrayLike
 from tomlkit.exceptions import TOMLKitError
 from tomlkit.items import Array
 
-from toewright.core.types import FloatArray
 from toewright.model.axle import POINT_NAMES, Axle, Corner
 from toewright.model.errors import InputError
 from toewright.model.files import MEMORY, loads, parse, read_text
-from toewright.model.frames import MM_PER, from_iso
+from toewright.model.frames import AXIS_SIGNS, MM_PER, from_iso
 from toewright.model.writing import write_text
 
 DECIMALS = 9
@@ -42,7 +41,7 @@ def set_points(source: str | Path, moved: Mapping[tuple[str, str], ArrayLike], f
         document = tomlkit.parse(text)
     except TOMLKitError as error:
         raise InputError(f"{file}: can't be edited ({error}); simplify the line") from error
-    decimals = DECIMALS + math.ceil(math.log10(MM_PER[written.length_unit]))
+    decimals = _decimals(written.length_unit)
     for (side, name), point in moved.items():
         place = np.asarray(point, dtype=float)
         if place.shape != (3,) or not np.all(np.isfinite(place)):
@@ -92,7 +91,7 @@ def save_points(path: Path, moved: Mapping[tuple[str, str], ArrayLike], out: Pat
 
 
 def save(axle: Axle, path: Path, *, force: bool = False) -> None:
-    """Write an axle as a new hardpoint file (mm, ISO 8855).
+    """Write an axle as a new hardpoint file, in the axes and the length unit it was read in.
 
     Raises:
         InputError: if the file is refused or can't be written.
@@ -101,7 +100,7 @@ def save(axle: Axle, path: Path, *, force: bool = False) -> None:
 
 
 def dumps(axle: Axle, *, heading: Sequence[str] = (), hints: bool = False, folder: Path | None = None) -> str:
-    """An axle as the text of a hardpoint file, mm and ISO 8855 axes, coordinates to 1e-9 mm.
+    """An axle as the text of a hardpoint file, in the axes and the length unit it was read in, coordinates to 1e-9 mm.
 
     Args:
         axle: what to write.
@@ -110,7 +109,8 @@ def dumps(axle: Axle, *, heading: Sequence[str] = (), hints: bool = False, folde
         folder: where the file will be; ``other_axle`` is written relative to it.
     """
     lines = [f"# {line}" for line in heading]
-    lines += ["schema = 1", f"title = {_text(axle.title)}", 'axes = "iso-8855"', 'length_unit = "mm"', ""]
+    lines += ["schema = 1", f"title = {_text(axle.title)}"]
+    lines += [f'axes = "{axle.axes}"', f'length_unit = "{axle.length_unit}"', ""]
     lines += [*_vehicle(axle, hints, folder), "", *_wheel(axle, hints), ""]
     lines += ["[setup]                        # static angles of each wheel"]
     lines += [
@@ -119,11 +119,15 @@ def dumps(axle: Axle, *, heading: Sequence[str] = (), hints: bool = False, folde
     ]
     lines += ["", *_rack(axle, hints)]
     for corner in (axle.left,) if axle.symmetric else (axle.left, axle.right):
-        lines += _corner(corner)
+        lines += _corner(axle, corner)
     if hints and axle.symmetric:
         lines += ["# [right] left out: the mirror image of the left", ""]
     text = "\n".join(lines).rstrip() + "\n"
     return text + (f"\n{tomlkit.dumps(dict(axle.extra))}" if axle.extra else "")
+
+
+def _decimals(unit: str) -> int:
+    return DECIMALS + math.ceil(math.log10(MM_PER[unit]))
 
 
 def _text(text: str) -> str:
@@ -131,8 +135,9 @@ def _text(text: str) -> str:
     return json.dumps(text, ensure_ascii=False).replace("\x7f", "\\u007f")
 
 
-def _number(value: float) -> str:
-    return repr(round(float(value), DECIMALS) + 0.0)
+def _number(value: float, unit: str = "mm") -> str:
+    """A number in its unit with the decimals of that unit."""
+    return repr(round(float(value), _decimals(unit)) + 0.0)
 
 
 def _line(key: str, value: float, comment: str = "") -> str:
@@ -140,24 +145,30 @@ def _line(key: str, value: float, comment: str = "") -> str:
     return f"{made:<30} # {comment}" if comment else made
 
 
-def _hint(key: str, example: str, comment: str) -> str:
-    made = f"# {key} = {example}"
-    return f"{made:<30} # {comment}"
+def _length(key: str, mm: float, axle: Axle, comment: str = "") -> str:
+    made = f"{key} = {_number(mm / MM_PER[axle.length_unit], axle.length_unit)}"
+    return f"{made:<30} # {comment}" if comment else made
+
+
+def _hint(key: str, mm: float, axle: Axle, comment: str) -> str:
+    return f"# {_length(key, mm, axle, comment).replace('   #', ' #', 1)}"
 
 
 def _vehicle(axle: Axle, hints: bool, folder: Path | None) -> list[str]:
     vehicle = axle.vehicle
     lines = ["[vehicle]", f'axle = "{vehicle.axle}"']
     if vehicle.wheelbase is not None:
-        lines.append(_line("wheelbase", vehicle.wheelbase))
+        lines.append(_length("wheelbase", vehicle.wheelbase, axle))
     elif hints:
-        lines.append(_hint("wheelbase", "1550.0", "to the other axle; for Ackermann and the turning circle"))
+        lines.append(_hint("wheelbase", 1550.0, axle, "to the other axle; for Ackermann and the turning circle"))
     if vehicle.other_axle is not None:
         place = vehicle.other_axle if folder is None else Path(os.path.relpath(vehicle.other_axle, folder))
         lines.append(f"other_axle = {_text(place.as_posix())}")
-    for key in ("cg_height", "brake_share", "front_overhang", "body_width"):
+    for key in ("cg_height", "front_overhang", "body_width"):
         if (value := getattr(vehicle, key)) is not None:
-            lines.append(_line(key, value))
+            lines.append(_length(key, value, axle))
+    if vehicle.brake_share is not None:
+        lines.append(_line("brake_share", vehicle.brake_share))
     for key in ("brakes", "drive"):
         if (word := getattr(vehicle, key)) is not None:
             lines.append(f'{key} = "{word}"')
@@ -165,12 +176,12 @@ def _vehicle(axle: Axle, hints: bool, folder: Path | None) -> list[str]:
 
 
 def _wheel(axle: Axle, hints: bool) -> list[str]:
-    lines = ["[wheel]", _line("loaded_radius", axle.wheel.loaded_radius, "wheel centre to road")]
+    lines = ["[wheel]", _length("loaded_radius", axle.wheel.loaded_radius, axle, "wheel centre to road")]
     for key in ("tyre_width", "rim_diameter", "rim_width"):
         if (value := getattr(axle.wheel, key)) is not None:
-            lines.append(_line(key, value))
+            lines.append(_length(key, value, axle))
     if hints and axle.wheel.rim_diameter is None:
-        lines.append(_hint("rim_diameter", "254.0", "toe in mm is measured across it"))
+        lines.append(_hint("rim_diameter", 254.0, axle, "toe in mm is measured across it"))
     return lines
 
 
@@ -180,24 +191,21 @@ def _rack(axle: Axle, hints: bool) -> list[str]:
         if not hints:
             return []
         return ["# No [rack]: tie_rod_inner is fixed to the body (a toe link).", ""]
-    lines = [
-        "[rack]",
-        f"axis = [{', '.join(repr(float(v)) for v in rack.axis)}]",
-        _line("stroke", rack.stroke, "each way"),
-    ]
+    direction = rack.axis * AXIS_SIGNS[axle.axes] + 0.0
+    lines = ["[rack]", f"axis = [{', '.join(repr(float(v)) for v in direction)}]"]
+    lines.append(_length("stroke", rack.stroke, axle, "each way"))
     if rack.travel_per_turn is not None:
-        lines.append(_line("travel_per_turn", rack.travel_per_turn, "one turn of the hand wheel"))
+        lines.append(_length("travel_per_turn", rack.travel_per_turn, axle, "one turn of the hand wheel"))
     elif hints:
-        lines.append(_hint("travel_per_turn", "50.0", "rack travel for one turn of the hand wheel"))
+        lines.append(_hint("travel_per_turn", 50.0, axle, "rack travel for one turn of the hand wheel"))
     return [*lines, ""]
 
 
-def _corner(corner: Corner) -> list[str]:
+def _corner(axle: Axle, corner: Corner) -> list[str]:
     points = {name: corner.points[name] for name in POINT_NAMES[corner.kind]}
     width = max(len(name) for name in points)
-    rows = [f"{name:<{width}} = {_point(point)}" for name, point in points.items()]
+    rows = []
+    for name, point in points.items():
+        numbers = from_iso(point, axle.axes, axle.length_unit)
+        rows.append(f"{name:<{width}} = [{', '.join(_number(v, axle.length_unit) for v in numbers)}]")
     return [f"[{corner.side}]", f'type = "{corner.kind}"', f"[{corner.side}.points]", *rows, ""]
-
-
-def _point(point: FloatArray) -> str:
-    return f"[{', '.join(_number(v) for v in point)}]"
