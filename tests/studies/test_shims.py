@@ -71,7 +71,7 @@ def test_ride_height_is_where_the_car_is_measured():
     assert found["toe_in_set"][middle] == pytest.approx(FRONT.setup.toe_in, abs=1e-9)
     stands = at_height(design_vector(FRONT, "left"), -6.0)
     assert stands[26] == pytest.approx(FRONT.left.points["wheel_centre"][2] - 6.0, abs=1e-12)
-    assert found["camber"][middle] == pytest.approx(maps["camber"][0, 0, 2], abs=1e-3)
+    assert found["camber"][middle] == pytest.approx(maps["camber"][0, 0, 2], abs=5e-3)
 
 
 def test_the_right_side_mirrors():
