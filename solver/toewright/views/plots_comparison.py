@@ -8,21 +8,21 @@ import numpy as np
 
 from toewright.studies.comparison import Comparison
 from toewright.views.plots_ride import draw_ride_curves
-from toewright.views.plots_sweep import ROW, WIDTH, footer_of, has_map, panel_curves, panel_maps, panel_over_rack
+from toewright.views.plots_sweep import footer_of, has_map, panel_curves, panel_maps, panel_over_rack
 from toewright.views.plots_turn import draw_error
 from toewright.views.sentences import SHOWN_FROM
-from toewright.views.style import new_figure, styled
+from toewright.views.style import ROW, results_figure, styled
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 
-def comparison_figure(compared: Comparison, title: str | None = None) -> Figure:
+def comparison_figure(compared: Comparison, *, plain: bool = False) -> Figure:
     """Changes of the bump-steer map from the first file, and the curves of all files over each other.
 
     Args:
         compared: the comparison, of six files at most.
-        title: above the figure; empty for none.
+        plain: without title and foot.
     """
     axles, maps = compared.axles, compared.maps
     sides = ("left",) if compared.mirrored else ("left", "right")
@@ -31,8 +31,7 @@ def comparison_figure(compared: Comparison, title: str | None = None) -> Figure:
     heights = [ROW * 1.12 * -(-len(panels) // 2)] if panels else []
     heights += [ROW] * len(sides) + [ROW]
     with styled():
-        words = f"Comparison of {len(axles)} files" if title is None else title
-        figure = new_figure(WIDTH, sum(heights) + 0.9, words, footer_of(axles))
+        figure = results_figure(sum(heights), f"Comparison of {len(axles)} files", footer_of(axles), plain=plain)
         parts = list(np.atleast_1d(np.asarray(figure.subfigures(len(heights), 1, height_ratios=heights))))
         if panels:
             titles = [f"Change of bump steer, {'ABCDEF'[k]} - A, {side} wheel" for k, side in panels]

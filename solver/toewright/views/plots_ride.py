@@ -14,8 +14,8 @@ from toewright.kinematics.summary import mirror_images
 from toewright.model.axle import Axle
 from toewright.model.errors import InputError
 from toewright.model.glossary import axis_label, quantity
-from toewright.views.plots_sweep import ROW, TOE_CHANGE, WIDTH, check_cases, footer_of
-from toewright.views.style import MARKERS, QUIET, SERIES, new_figure, styled, zero_lines
+from toewright.views.plots_sweep import TOE_CHANGE, check_cases, footer_of
+from toewright.views.style import MARKERS, QUIET, ROW, SERIES, results_figure, styled, zero_lines
 from toewright.views.words import case_labels
 
 if TYPE_CHECKING:
@@ -162,12 +162,13 @@ def draw_ride_curves(axes: Axes, axles: Sequence[Axle], rides: Sequence[RideMaps
     axes.set_ylabel(axis_label(name))
 
 
-def ride_figure(axles: Sequence[Axle], rides: Sequence[RideMaps]) -> Figure:
+def ride_figure(axles: Sequence[Axle], rides: Sequence[RideMaps], *, plain: bool = False) -> Figure:
     """Toe and camber over bump, roll steer and roll-centre path, of one or several files; as many panels as there are motions.
 
     Args:
         axles: one to six.
         rides: the ride of each, of the same motions and positions.
+        plain: without title and foot.
 
     Raises:
         InputError: if every motion has one position only.
@@ -183,7 +184,7 @@ def ride_figure(axles: Sequence[Axle], rides: Sequence[RideMaps]) -> Figure:
     with styled():
         at_rack = f", rack at {rides[0].rack_travel:+g} mm" if rides[0].rack_travel else ""
         title = f"{labels[0]}{at_rack}" if of.single else f"Riding: {len(axles)} files{at_rack}"
-        figure = new_figure(WIDTH, ROW * rows + 0.9, title, footer_of(axles))
+        figure = results_figure(ROW * rows, title, footer_of(axles), plain=plain)
         grid = figure.subplots(rows, 2, squeeze=False)
         for axes, panel in zip(grid.flat, panels, strict=False):
             panel.draw(axes)

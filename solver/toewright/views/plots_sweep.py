@@ -18,8 +18,9 @@ from toewright.views.style import (
     MAP_INK,
     MARKERS,
     QUIET,
+    ROW,
     SERIES,
-    new_figure,
+    results_figure,
     styled,
     toe_colours,
     zero_lines,
@@ -29,12 +30,6 @@ from toewright.views.words import case_labels, number, trace_words
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure, SubFigure
-
-WIDTH = 9.6
-"""Inches of a whole figure; 1200 px at the style's resolution."""
-
-ROW = 3.6
-"""Inches of a row of panels."""
 
 FLAT = 1e-7
 """Deg; a map with less everywhere is drawn as level."""
@@ -215,12 +210,13 @@ def footer_of(axles: Sequence[Axle]) -> str:
     return "\n".join(label + trace_words(axle) for label, axle in zip(labels, axles, strict=True))
 
 
-def sweep_figure(axles: Sequence[Axle], maps: Sequence[CornerMaps]) -> Figure:
+def sweep_figure(axles: Sequence[Axle], maps: Sequence[CornerMaps], *, plain: bool = False) -> Figure:
     """Bump-steer maps, and toe change and camber over wheel travel, of one or several files.
 
     Args:
         axles: one to six.
         maps: the sweep of each, over the same positions.
+        plain: without title and foot.
 
     Raises:
         InputError: if there is only one pose, so that there is nothing to draw.
@@ -240,7 +236,7 @@ def sweep_figure(axles: Sequence[Axle], maps: Sequence[CornerMaps]) -> Figure:
     labels = case_labels(axles)
     with styled():
         title = labels[0] if len(axles) == 1 else f"Bump steer and camber of {len(axles)} files"
-        figure = new_figure(WIDTH, sum(heights) + 0.9, title, footer_of(axles))
+        figure = results_figure(sum(heights), title, footer_of(axles), plain=plain)
         parts = np.atleast_1d(np.asarray(figure.subfigures(len(heights), 1, height_ratios=heights)))
         if panels:
             mirrored = " (right: mirror image, rack the other way)" if alone and len(panels) == 1 else ""

@@ -13,9 +13,9 @@ from toewright.kinematics.turning import TurnMaps
 from toewright.model.axle import Axle
 from toewright.model.errors import InputError
 from toewright.model.glossary import axis_label
-from toewright.views.plots_sweep import ROW, WIDTH, check_cases, footer_of
+from toewright.views.plots_sweep import check_cases, footer_of
 from toewright.views.sentences import SHOWN_FROM, largest_slip
-from toewright.views.style import MARKERS, QUIET, SERIES, new_figure, styled, zero_lines
+from toewright.views.style import MARKERS, QUIET, ROW, SERIES, results_figure, styled, zero_lines
 from toewright.views.words import case_labels
 
 if TYPE_CHECKING:
@@ -119,12 +119,13 @@ def draw_error(axes: Axes, axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> 
     axes.set_title("Ackermann error")
 
 
-def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> Figure:
+def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps], *, plain: bool = False) -> Figure:
     """Steer angles with the ideal, Ackermann error and percent, turning circles and slip, of one or several files.
 
     Args:
         axles: one to six.
         turns: the turn of each, over the same rack positions and by the same definition of Ackermann percent.
+        plain: without title and foot.
 
     Raises:
         InputError: if no position reaches SHOWN_FROM deg of mean steer.
@@ -139,7 +140,7 @@ def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> Figure:
     labels = case_labels(axles)
     with styled():
         title = labels[0] if len(axles) == 1 else f"Turning: {len(axles)} files"
-        figure = new_figure(WIDTH, 3.1 * ROW + 0.8, title, footer_of(axles))
+        figure = results_figure(3.1 * ROW, title, footer_of(axles), plain=plain)
         panels = figure.subplot_mosaic([["steer", "steer"], ["error", "percent"], ["circle", "slip"]])
         _draw_steer(panels["steer"], turns, labels)
         error, percent, slip = panels["error"], panels["percent"], panels["slip"]

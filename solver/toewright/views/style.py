@@ -91,6 +91,23 @@ def styled() -> Iterator[None]:
         yield
 
 
+WIDTH = 9.6
+"""Inches of a whole figure; 1200 px at the style's resolution."""
+
+PAGE_WIDTH = 8.2
+"""Inches of a figure on a page, so that its letters keep their size in print."""
+
+ROW = 3.6
+"""Inches of a row of panels."""
+
+
+def results_figure(height: float, title: str, footer: str, *, plain: bool = False) -> Figure:
+    """``new_figure`` of the usual width, with panels ``height`` inches high; ``plain``: for a page that has title and foot already."""
+    if plain:
+        return new_figure(PAGE_WIDTH, height, "", "")
+    return new_figure(WIDTH, height + 0.9, title, footer)
+
+
 def new_figure(width: float, height: float, title: str, footer: str) -> Figure:
     """An empty figure in inches, title on top, where the numbers come from at the foot. Call it inside ``styled``."""
     from matplotlib.figure import Figure
