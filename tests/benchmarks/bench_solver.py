@@ -116,10 +116,11 @@ def lanes_only(designs: np.ndarray) -> None:
     lever = np.min(np.linalg.norm(designs[:, 21:24] - designs[:, 24:27], axis=1))
     rack, travel = grid_line(RACK, LONGEST_STRIDE * lever), grid_line(TRAVEL, LONGEST_STRIDE * lever)
     poses, counts = np.empty((512, 441, 6)), np.empty((512, 441), np.int64)
+    nothing = np.empty(0, np.int64)
     for first in range(0, len(designs), 512):
         part = designs[first : first + 512]
         axes = (rack.values, rack.way, rack.keep, travel.values, travel.way, travel.keep, 0.0)
-        kernels.solve_grid(part, *axes, poses[: len(part)], counts[: len(part)])
+        kernels.solve_grid(part, *axes, poses[: len(part)], counts[: len(part)], nothing, np.empty((len(part), 441, 0)))
 
 
 def drain(designs: np.ndarray, threads: int) -> None:

@@ -720,36 +720,6 @@ def _block_grid(
             _line(B, rack[i], travel_line[way], travel_keep[way], 0.0, contact, at, nodes, counts, grips)
 
 
-@compiled
-def solve_grid(
-    designs, rack, rack_line, rack_keep, travel, travel_line, travel_keep, contact, poses, iterations,
-):  # fmt: skip
-    """Poses of every design on the grid: designs (N, DESIGN), poses (N, R * T, 6), iterations (N, R * T).
-
-    rack_line and travel_line (2, n) with their keep (2, n) are the ways up and down as ``_line`` takes them;
-    poses are NaN where a lane was not certain of its branch, for ``walk_grid`` to decide.
-    """
-    count = rack.size * travel.size
-    nodes, counts, grips = np.empty((count, 6 * LANES)), np.empty(count, np.int64), np.empty((count, LANES))
-    starts, start_counts = np.empty((rack.size, 6 * LANES)), np.empty(rack.size, np.int64)
-    start_grips = np.empty((rack.size, LANES))
-    B = np.zeros(BLOCK * LANES)
-    flat = poses.reshape(-1)
-    for first in range(0, designs.shape[0], LANES):
-        _pack_block(designs, first, contact, B)
-        _block_grid(
-            B, rack, rack_line, rack_keep, travel, travel_line, travel_keep, contact,
-            nodes, counts, grips, starts, start_counts, start_grips,
-        )  # fmt: skip
-        for n in range(count):
-            for lane in range(min(LANES, designs.shape[0] - first)):
-                at = 6 * ((first + lane) * count + n)
-                iterations[first + lane, n] = counts[n]
-                lost = math.isnan(nodes[n, lane])
-                for k in range(6):
-                    flat[at + k] = math.nan if lost else nodes[n, k * LANES + lane]
-
-
 # ------------------------------------------------------------------------------------------- measures and derivatives
 
 
@@ -791,23 +761,69 @@ def _measure_block(B, contact):
         B[(OUT + 46) * LANES + lane] = max(max(max(e0, e1), max(e2, e3)), e4)
 
 
+@inline
+def _store_columns(B, at, stride, lanes, columns, target):
+    """Chosen measures of a block to target: lane l goes to row at + l * stride of a table with columns.size cells a row."""
+    C = columns.size
+    for c in range(C):
+        source = (OUT + columns[c]) * LANES
+        for lane in range(lanes):
+            target[(at + lane * stride) * C + c] = B[source + lane]
+
+
 @compiled
 def measure_poses(designs, poses, rack, travel, contact, columns, out):
     """Chosen COLUMNS of given poses: poses (N, M, 6), rack and travel (N or 1, M), columns (C,), out (N, M, C)."""
     B = np.zeros(BLOCK * LANES)
     flat, target = poses.reshape(-1), out.reshape(-1)
-    M, C = poses.shape[1], columns.size
+    M = poses.shape[1]
     for first in range(0, designs.shape[0], LANES):
         _pack_block(designs, first, contact, B)
         lanes = min(LANES, designs.shape[0] - first)
         for m in range(M):
             _load_poses(B, flat, poses.shape[1], m, rack, travel, first, lanes)
             _measure_block(B, contact)
-            for c in range(C):
-                source = (OUT + columns[c]) * LANES
-                at = (first * M + m) * C + c
-                for lane in range(lanes):
-                    target[at + lane * M * C] = B[source + lane]
+            _store_columns(B, first * M + m, M, lanes, columns, target)
+
+
+@compiled
+def solve_grid(
+    designs, rack, rack_line, rack_keep, travel, travel_line, travel_keep, contact, poses, iterations, columns, out,
+):  # fmt: skip
+    """Poses of every design on the grid, and chosen COLUMNS of them: designs (N, DESIGN), poses (N, R * T, 6).
+
+    rack_line and travel_line (2, n) with their keep (2, n) are the ways up and down as ``_line`` takes them; iterations
+    (N, R * T); columns (C,), none to measure nothing; out (N, R * T, C). Poses and columns are NaN where a lane was not
+    certain of its branch, for ``walk_grid`` to decide.
+    """
+    count, C = rack.size * travel.size, columns.size
+    nodes, counts, grips = np.empty((count, 6 * LANES)), np.empty(count, np.int64), np.empty((count, LANES))
+    starts, start_counts = np.empty((rack.size, 6 * LANES)), np.empty(rack.size, np.int64)
+    start_grips = np.empty((rack.size, LANES))
+    B = np.zeros(BLOCK * LANES)
+    flat, target = poses.reshape(-1), out.reshape(-1)
+    for first in range(0, designs.shape[0], LANES):
+        _pack_block(designs, first, contact, B)
+        _block_grid(
+            B, rack, rack_line, rack_keep, travel, travel_line, travel_keep, contact,
+            nodes, counts, grips, starts, start_counts, start_grips,
+        )  # fmt: skip
+        lanes = min(LANES, designs.shape[0] - first)
+        for n in range(count):
+            for lane in range(lanes):
+                at = 6 * ((first + lane) * count + n)
+                iterations[first + lane, n] = counts[n]
+                lost = math.isnan(nodes[n, lane])
+                for k in range(6):
+                    flat[at + k] = math.nan if lost else nodes[n, k * LANES + lane]
+            if C == 0:
+                continue
+            _copy(nodes[n], 0, B, X * LANES, 6 * LANES)
+            for lane in range(LANES):
+                B[RACK_AT * LANES + lane] = rack[n // travel.size]
+                B[TRAVEL_AT * LANES + lane] = travel[n % travel.size]
+            _measure_block(B, contact)
+            _store_columns(B, first * count + n, count, lanes, columns, target)
 
 
 @vectorised

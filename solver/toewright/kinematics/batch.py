@@ -82,19 +82,22 @@ def _solve_chunk(designs: FloatArray, rack: Line, travel: Line, drive: float, co
     count, R, T = designs.shape[0], rack.values.size, travel.values.size
     poses = np.empty((count, R * T, layout.POSE_SIZE))
     iterations = np.zeros((count, R * T), dtype=np.int64)
+    indices = _column_indices(columns)
+    values = np.empty((count, R * T, indices.size))
     axes = (rack.values, rack.way, rack.keep, travel.values, travel.way, travel.keep, drive)
-    kernels.solve_grid(designs, *axes, poses, iterations)
+    kernels.solve_grid(designs, *axes, poses, iterations, indices, values)
     lost = np.isnan(poses[..., 0])
     status = np.where(lost, np.int8(layout.OUT_OF_REACH), np.int8(layout.OK))
     ends = np.full((count, R * T, 2), np.nan)
     if lost.any():
-        kernels.walk_grid(designs, np.flatnonzero(lost.any(axis=1)), *axes, poses, status, iterations, ends)
+        again = np.flatnonzero(lost.any(axis=1))
+        kernels.walk_grid(designs, again, *axes, poses, status, iterations, ends)
         poses[status != layout.OK] = np.nan
-    indices = _column_indices(columns)
-    at_rack = np.repeat(rack.values, T)[np.newaxis]
-    at_travel = np.tile(travel.values, R)[np.newaxis]
-    values = np.empty((count, R * T, indices.size))
-    kernels.measure_poses(designs, poses, at_rack, at_travel, drive, indices, values)
+        at_rack = np.repeat(rack.values, T)[np.newaxis]
+        at_travel = np.tile(travel.values, R)[np.newaxis]
+        walked = np.empty((again.size, R * T, indices.size))
+        kernels.measure_poses(designs[again], poses[again], at_rack, at_travel, drive, indices, walked)
+        values[again] = walked
     grid = values.reshape(count, R, T, -1)
     if "bump_steer" in columns:
         k = columns.index("bump_steer")
