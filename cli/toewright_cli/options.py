@@ -72,7 +72,7 @@ TravelAtOption = Annotated[TravelAt, typer.Option("--travel-at", help="What the 
 SideOption = Annotated[SideChoice, typer.Option("--side", help="Which corners.")]
 
 
-def _number(text: str, option: str, whole: str) -> float:
+def _number(text: str, option: str, whole: str, grammar: str = LIST_HELP) -> float:
     from toewright.model.errors import InputError
 
     try:
@@ -80,7 +80,7 @@ def _number(text: str, option: str, whole: str) -> float:
     except ValueError:
         value = math.nan
     if not math.isfinite(value):
-        raise InputError(f"{option} {whole}: {text.strip()!r} is not a number; write {LIST_HELP}")
+        raise InputError(f"{option} {whole}: {text.strip()!r} is not a number; write {grammar}")
     if abs(value) > LARGEST_VALUE:
         raise InputError(f"{option} {whole}: {value:g} is more than any car has; the limit is {LARGEST_VALUE:g}")
     return value
@@ -153,3 +153,30 @@ def parse_rack(text: str | None, axle: Axle) -> list[float] | None:
             f"{axle.path}: has no [rack], so --rack {text} means nothing; leave --rack out, or add a [rack] table"
         )
     return values
+
+
+POSE_HELP = "rack=20,travel=-10 (mm; what is left out is 0)"
+"""The grammar of a POSE, for messages."""
+
+
+def parse_pose(text: str, axle: Axle, option: str = "--pose") -> tuple[float, float]:
+    """Rack travel and wheel travel, mm, from a POSE such as ``rack=20,travel=-10``; what is left out is 0.
+
+    Raises:
+        InputError: for another key, a key twice, what is no number, or rack travel on an axle that has no rack.
+    """
+    from toewright.model.errors import InputError
+
+    found: dict[str, float] = {}
+    for part in text.split(","):
+        key, equals, value = (piece.strip() for piece in part.partition("="))
+        if not equals or key not in ("rack", "travel"):
+            raise InputError(f"{option} {text}: {part.strip()!r} is no rack=... or travel=...; write {POSE_HELP}")
+        if key in found:
+            raise InputError(f"{option} {text}: {key} is given twice; write {POSE_HELP}")
+        found[key] = _number(value, option, text, POSE_HELP)
+    if axle.rack is None and found.get("rack"):
+        raise InputError(
+            f"{axle.path}: has no [rack], so {option} {text} means nothing; leave rack= out, or add a [rack] table"
+        )
+    return found.get("rack", 0.0), found.get("travel", 0.0)

@@ -13,6 +13,7 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "ride": ("ride", "ride"),
     "locus": ("locus", "locus"),
     "compare": ("compare", "compare"),
+    "report": ("report", "report"),
     "shims": ("shims", "shims"),
     "draw": ("draw", "draw"),
     "schema": ("schema", "schema"),
