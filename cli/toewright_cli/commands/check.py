@@ -23,9 +23,9 @@ def check(
     as_json: AsJson = False,
     explain: Explain = False,
 ) -> None:
-    """Validate hardpoint files and print the design-position sheet of each corner, with remarks on what is odd.
+    """Validate hardpoint files and print the design-position sheet of each corner, remarks, limits and the file's own targets.
 
-    All files are checked; the exit code is 2 when any of them is at fault.
+    All files are checked; the exit code is 2 when any of them is at fault, 1 when one misses a target.
 
     Example: toewright check hardpoints/*.toml
     """
@@ -33,11 +33,13 @@ def check(
     from toewright.kinematics.sheet import SHEET_COLUMNS, design_sheets
     from toewright.model.errors import InputError
     from toewright.model.files import load
+    from toewright.studies.verdicts import check_targets
     from toewright_cli.show.limits import limits_document, print_limits
     from toewright_cli.show.sheet import print_sheet, sheet_document
+    from toewright_cli.show.verdicts import print_verdicts, verdicts_document
 
     documents: list[dict[str, Any]] = []
-    shown = faults = 0
+    shown = faults = missed = 0
     for file in files:
         try:
             axle = load(file)
@@ -45,22 +47,30 @@ def check(
             notice_compilation()
             sheets = design_sheets(axle)
             bounds = limits(axle)
+            verdicts = check_targets(axle)
         except InputError as error:
             faults += 1
             complain(str(error))
             documents.append({"file": str(file), "error": str(error)})
             continue
         if as_json:
-            documents.append({**sheet_document(axle, sheets), "limits": limits_document(axle, bounds)})
+            targets = verdicts_document(verdicts)
+            documents.append(
+                {**sheet_document(axle, sheets), "limits": limits_document(axle, bounds), "targets": targets}
+            )
         else:
             if shown:
                 typer.echo()
             print_sheet(axle, sheets, workshop)
             print_limits(axle, bounds)
+            print_verdicts(verdicts)
         shown += 1
+        missed += sum(not verdict.passed for verdict in verdicts)
     if as_json:
         print_json(documents)
     elif explain and shown:
         print_definitions(SHEET_COLUMNS)
     if faults:
         raise typer.Exit(2)
+    if missed:
+        raise typer.Exit(1)
