@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from functools import lru_cache
+from itertools import pairwise
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -26,7 +27,7 @@ HEIGHT = 16.0
 ARM = 34.0
 """Length of the axes' arrows, px."""
 
-CLOSE = 1.5
+CLOSE = 10.0
 """Joints nearer than this (px) to each other in a view share one name."""
 
 
@@ -146,7 +147,16 @@ def merged_labels(labels: Sequence[Label], places: FloatArray) -> tuple[list[str
         else:
             texts.append([label.text])
             kept.append(place)
-    return [", ".join(group) for group in texts], np.array(kept).reshape(-1, 2)
+    return [common_name(group) for group in texts], np.array(kept).reshape(-1, 2)
+
+
+def common_name(names: Sequence[str]) -> str:
+    """Several names as one, without saying twice what two in a row begin with: ``lower pivot front, rear``."""
+    said = [names[0]]
+    for before, name in pairwise(names):
+        stem = before.rpartition(" ")[0]
+        said.append(name.removeprefix(f"{stem} ") if stem and name.startswith(f"{stem} ") else name)
+    return ", ".join(said)
 
 
 def add_labels(axes: Axes, scene: Scene, view: View, labels: Sequence[Label], taken: Sequence[Box]) -> None:
@@ -176,8 +186,18 @@ def add_scale_colours(figure: Figure, scale: ColourScale, corner: tuple[float, f
     """A bar of the colours with its numbers; ``corner`` is its upper left one, px from the left and from the top."""
     width = float(figure.bbox.width)
     bar = figure.add_axes((corner[0] / width, 1.0 - (corner[1] + 16.0) / total, 320.0 / width, 14.0 / total))
-    ramp = np.linspace(-1.0, 1.0, 256)[np.newaxis]
-    bar.imshow(ramp, cmap=palette.bump_steer_colours(), aspect="auto", extent=(-scale.limit, scale.limit, 0.0, 1.0))
+    edges = np.linspace(-scale.limit, scale.limit, 129)
+    middles = 0.5 * (edges[1:] + edges[:-1]) / scale.limit
+    bar.pcolormesh(
+        edges,
+        [0.0, 1.0],
+        middles[np.newaxis],
+        cmap=palette.bump_steer_colours(),
+        edgecolors="face",
+        vmin=-1.0,
+        vmax=1.0,
+    )
+    bar.grid(False)
     bar.set_yticks([])
     bar.tick_params(labelsize=_points(TEXT), colors=INK, length=3)
     bar.set_xticks(np.linspace(-scale.limit, scale.limit, 5))

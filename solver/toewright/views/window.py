@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import textwrap
 from collections.abc import Callable, Sequence
 from typing import Any
 
@@ -49,6 +50,7 @@ class LinkageWindow:
 
         self.axle, self.pose, self.sides, self.travel_at = axle, pose, tuple(sides), travel_at
         self.names_shown = True
+        self.sliders: list[Any] = []
         self.scene = build_scene(axle, [pose], sides=self.sides, travel_at=travel_at)
         made: Any = pyvista.Plotter
         self.plotter: Any = made(
@@ -59,7 +61,8 @@ class LinkageWindow:
         self.plotter.render_window.SetMultiSamples(0)
         self.plotter.render_window.SetAlphaBitPlanes(1)
         self.plotter.enable_depth_peeling(6)
-        self.plotter.enable_anti_aliasing("fxaa")
+        if not off_screen:
+            self.plotter.enable_anti_aliasing("fxaa")
         self.plotter.enable_parallel_projection()
         self.plotter.add_text(HELP, position=(12, 8), font_size=8, color=QUIET, name="help")
         self.show_pose()
@@ -79,11 +82,12 @@ class LinkageWindow:
             stroke = max(self.axle.rack.stroke, abs(self.pose.rack))
             sliders.append(("rack travel, mm (along the rack axis +)", stroke, self.pose.rack, self.move_rack, 0.28))
         for title, most, value, moved, left in sliders:
-            self.plotter.add_slider_widget(
+            made = self.plotter.add_slider_widget(
                 moved, rng=(-most, most), value=value, title=title, pointa=(left, 0.1), pointb=(left + 0.3, 0.1),
                 title_height=0.018, fmt="%+.1f", style="modern", color=INK, title_color=INK,
                 interaction_event="always",
             )  # fmt: skip
+            self.sliders.append(made)
 
     def show_pose(self) -> None:
         """Put the present scene into the window."""
@@ -101,7 +105,7 @@ class LinkageWindow:
             self.plotter.add_point_labels(
                 np.array([label.at for label in self.scene.labels]), [label.text for label in self.scene.labels],
                 name="names", font_size=12, text_color=INK, shape_color=PAPER, shape_opacity=0.6,
-                show_points=False, always_visible=True, margin=2, reset_camera=False,
+                show_points=False, bold=False, shadow=False, always_visible=True, margin=2, reset_camera=False,
             )  # fmt: skip
 
     def toggle_names(self) -> None:
@@ -136,7 +140,7 @@ class LinkageWindow:
             self.scene = build_scene(self.axle, [pose], sides=self.sides, travel_at=self.travel_at)
         except InputError as error:
             reason = str(error).removeprefix(f"{self.axle.path or self.axle.title}: ")
-            self._show_text(reason.replace(": ", ":\n").replace(", ", ",\n"), palette.TIE_ROD)
+            self._show_text("\n".join(textwrap.wrap(reason, 70)), palette.TIE_ROD)
             return
         self.pose = pose
         self.show_pose()
