@@ -23,12 +23,17 @@ if TYPE_CHECKING:
     from toewright.model.axle import Axle, Corner
     from toewright.model.errors import InputError
     from toewright.model.files import load, loads
+    from toewright.studies.comparison import Comparison, compare
     from toewright.studies.locus import Locus, locus
     from toewright.studies.shims import ShimTable, shims
+    from toewright.views.report import write_report
 
 __version__ = "0.1.0"
 
 _HOMES = {
+    "Comparison": "toewright.studies.comparison",
+    "compare": "toewright.studies.comparison",
+    "write_report": "toewright.views.report",
     "Axle": "toewright.model.axle",
     "AxleLimits": "toewright.kinematics.limits",
     "Corner": "toewright.model.axle",
@@ -55,6 +60,7 @@ _HOMES = {
 __all__ = [
     "Axle",
     "AxleLimits",
+    "Comparison",
     "Corner",
     "CornerMaps",
     "InputError",
@@ -64,6 +70,7 @@ __all__ = [
     "Slopes",
     "Stop",
     "TurnMaps",
+    "compare",
     "design_pose",
     "limits",
     "load",
@@ -74,6 +81,7 @@ __all__ = [
     "slopes",
     "sweep",
     "turn",
+    "write_report",
 ]
 
 

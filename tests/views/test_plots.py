@@ -173,5 +173,5 @@ def test_a_figure_for_a_page_follows_light_and_dark() -> None:
     root = ET.fromstring(text)
     assert root.tag.endswith("svg")
     assert "prefers-color-scheme: dark" in text
-    assert "var(--ink)" in text
+    assert "fill: var(--c0)" in text
     assert "#ffffff" not in text.split("</style>", 1)[1]

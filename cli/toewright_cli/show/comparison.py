@@ -7,10 +7,9 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from toewright.views.comparison_rows import change_sentences, point_rows, row_cells, setting_rows, sheet_headings
-from toewright.views.words import axle_words, case_labels, number, span_words
+from toewright.views.words import axle_words, case_labels, number, span_words, spread_indices
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
-from toewright_cli.show.maps import spread_indices
 
 if TYPE_CHECKING:
     from collections.abc import Sequence

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 from rich.text import Text
 
-from toewright.views.words import axle_words, figure, lock_words, number, span_words, travel_words
+from toewright.views.words import axle_words, figure, lock_words, number, span_words, spread_indices, travel_words
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import Table, meanings, source_of
 
@@ -159,12 +159,6 @@ def _mirror_words(axle: Axle) -> str:
     if axle.rack is None:
         return "The right wheel does the same: the sides are mirror images."
     return "The right wheel does the same with the rack the other way: the sides are mirror images."
-
-
-def spread_indices(size: int, count: int, keep: int) -> list[int]:
-    """About ``count`` indices of 0..size-1 in even steps from index ``keep`` outward, with both ends among them."""
-    step = max(1, -(-(size - 1) // (count - 1)))
-    return sorted({*range(keep, size, step), *range(keep, -1, -step), 0, size - 1})
 
 
 def _print_bump_steer(axle: Axle, table: BumpSteer, scale: ToeScale) -> None:

@@ -7,10 +7,9 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from toewright.views.sentences import ride_sentences
-from toewright.views.words import axle_words, number
+from toewright.views.words import axle_words, number, spread_indices
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
-from toewright_cli.show.maps import spread_indices
 
 if TYPE_CHECKING:
     from toewright.kinematics.riding import RideMaps

@@ -7,11 +7,10 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from toewright.views.sentences import SHOWN_FROM, ackermann_sentences, circle_sentences, largest_slip
-from toewright.views.words import axle_words, number, span_words
+from toewright.views.words import axle_words, number, span_words, spread_indices
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
 from toewright_cli.show.limits import limits_document, print_limits
-from toewright_cli.show.maps import spread_indices
 
 if TYPE_CHECKING:
     from toewright.kinematics.limits import AxleLimits

@@ -120,39 +120,45 @@ def _panels(of: _Rides) -> list[_Panel]:
 
         return draw
 
+    def curves_of(name: str) -> Callable[[str], Callable[[Axes], None]]:
+        return lambda motion: curves(motion, name, axis_label(name), ())
+
+    def path(motion: str) -> Callable[[Axes], None]:
+        return lambda axes: of.path(axes, motion)
+
     camber, road = (
         axis_label("camber"),
         f"{quantity('camber_road_left').label.removesuffix(', left')} (deg, top outboard +)",
     )
     wheels = "each wheel" if of.alike() else "left and right wheel"
+    track = curves_of("track_change")
     found: list[_Panel] = []
     if "bump" in motions:
         found += [
             _Panel(f"Bump: toe change, {wheels}", curves("bump", "bump_steer", TOE_CHANGE, both)),
             _Panel(f"Bump: camber, {wheels}", curves("bump", "camber", camber, both)),
+            _Panel("Bump: track change", track("bump")),
         ]
+        if of.alike():
+            found.append(_Panel("Bump: roll-centre height", curves_of("roll_centre_z")("bump")))
+        else:
+            found.append(_Panel("Bump: roll-centre path, seen from the front", path("bump")))
     if "roll" in motions:
+        sides = ("left", "right")
         found += [
-            _Panel("Roll steer", curves("roll", "axle_steer", axis_label("axle_steer"), ())),
-            _Panel("Roll: camber to the road", curves("roll", "camber_road", road, ("left", "right"))),
+            _Panel("Roll: toe change of the wheels", curves("roll", "bump_steer", TOE_CHANGE, sides)),
+            _Panel("Roll steer", curves_of("axle_steer")("roll")),
+            _Panel("Roll: camber to the road", curves("roll", "camber_road", road, sides)),
+            _Panel("Roll: roll-centre path, seen from the front", path("roll")),
         ]
     if "single" in motions and "bump" not in motions:
         side = of.rides[0].moving_side
         found += [
             _Panel(f"The {side} wheel alone: toe change", curves("single", "bump_steer", TOE_CHANGE, (side,))),
             _Panel(f"The {side} wheel alone: camber", curves("single", "camber", camber, (side,))),
+            _Panel(f"The {side} wheel alone: track change", track("single")),
+            _Panel("Roll-centre path, seen from the front", path("single")),
         ]
-
-    def path(motion: str) -> Callable[[Axes], None]:
-        return lambda axes: of.path(axes, motion)
-
-    words = {"bump": "in bump", "roll": "in roll", "single": "with one wheel moving"}
-    for motion in motions:
-        if motion == "bump" and of.alike():
-            height = curves("bump", "roll_centre_z", axis_label("roll_centre_z"), ())
-            found.append(_Panel("Roll-centre height in bump", height))
-        elif motion != "single" or len(motions) == 1:
-            found.append(_Panel(f"Roll-centre path {words[motion]}, seen from the front", path(motion)))
     return found
 
 

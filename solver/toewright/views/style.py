@@ -24,9 +24,6 @@ PAPER = "#ffffff"
 RULE = "#d5dadf"
 """Text and axes, remarks, background, grid."""
 
-DARK = {INK: "#e6eaee", QUIET: "#a3adb6", PAPER: "#161c22", RULE: "#37414b"}
-"""What the four become on a dark page."""
-
 MAP_INK = "#1d2731"
 """Lines and labels on the fill of a map, whose colours stay as they are on a dark page."""
 
@@ -41,6 +38,20 @@ TOE_STOPS = ("#28588f", "#6f9cc9", "#c6d9ea", "#f6f4ef", "#f2d3a8", "#dc9a4e", "
 
 FAMILY = ("#1f4f8a", "#5a8fc4", "#6d7780", "#d39447", "#a2590f")
 """Rack positions from right to left."""
+
+DARK = {
+    INK: "#e6eaee",
+    QUIET: "#a3adb6",
+    PAPER: "#161c22",
+    RULE: "#37414b",
+    FAMILY[0]: "#a8cdf2",
+    FAMILY[2]: "#9aa5ae",
+    FAMILY[4]: "#f3c58d",
+    SERIES[0]: "#5b9ee0",
+    SERIES[3]: "#c583bd",
+    SERIES[5]: "#dd7d72",
+}
+"""What text, background and the darker lines become on a dark page."""
 
 _SETTINGS: Mapping[str, Any] = {
     "font.family": ["DejaVu Sans"],
@@ -97,6 +108,9 @@ WIDTH = 9.6
 PAGE_WIDTH = 8.2
 """Inches of a figure on a page, so that its letters keep their size in print."""
 
+PAGE_SHARE = 0.8
+"""Height of a figure on a page as a share of its usual height, so that two find room on a sheet."""
+
 ROW = 3.6
 """Inches of a row of panels."""
 
@@ -104,7 +118,7 @@ ROW = 3.6
 def results_figure(height: float, title: str, footer: str, *, plain: bool = False) -> Figure:
     """``new_figure`` of the usual width, with panels ``height`` inches high; ``plain``: for a page that has title and foot already."""
     if plain:
-        return new_figure(PAGE_WIDTH, height, "", "")
+        return new_figure(PAGE_WIDTH, PAGE_SHARE * height, "", "")
     return new_figure(WIDTH, height + 0.9, title, footer)
 
 
@@ -164,11 +178,10 @@ def svg_for_page(figure: Figure) -> str:
     with styled():
         figure.savefig(stream, format="svg", metadata={"Date": None})
     text = stream.getvalue()
-    names = {INK: "ink", QUIET: "quiet", PAPER: "paper", RULE: "rule"}
-    for colour, name in names.items():
-        text = text.replace(colour, f"var(--{name})")
-    light = ";".join(f"--{name}:{colour}" for colour, name in names.items())
-    dark = ";".join(f"--{name}:{DARK[colour]}" for colour, name in names.items())
+    for k, colour in enumerate(DARK):
+        text = text.replace(colour, f"var(--c{k})")
+    light = ";".join(f"--c{k}:{colour}" for k, colour in enumerate(DARK))
+    dark = ";".join(f"--c{k}:{colour}" for k, colour in enumerate(DARK.values()))
     rules = (
         f"<style>:root{{{light}}}@media screen and (prefers-color-scheme: dark){{:root{{{dark}}}}}"
         "*{stroke-linejoin:round;stroke-linecap:butt}</style>"

@@ -101,3 +101,9 @@ def trace_words(axle: Axle) -> str:
 
     file = "in memory" if axle.path is None else axle.path.name
     return f"{file}{f' (sha256 {axle.sha256[:12]})' if axle.sha256 else ''}, toewright {__version__}"
+
+
+def spread_indices(size: int, count: int, keep: int) -> list[int]:
+    """About ``count`` indices of 0..size-1 in even steps from index ``keep`` outward, with both ends among them."""
+    step = max(1, -(-(size - 1) // (count - 1)))
+    return sorted({*range(keep, size, step), *range(keep, -1, -step), 0, size - 1})
