@@ -13,6 +13,7 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "ride": ("ride", "ride"),
     "tune": ("tune", "tune"),
     "locus": ("locus", "locus"),
+    "tolerance": ("tolerance", "tolerance"),
     "compare": ("compare", "compare"),
     "report": ("report", "report"),
     "shims": ("shims", "shims"),

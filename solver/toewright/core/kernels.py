@@ -771,6 +771,16 @@ def _store_columns(B, at, stride, lanes, columns, target):
             target[(at + lane * stride) * C + c] = B[source + lane]
 
 
+@vectorised
+def _heading_block(B):
+    """The first two COLUMNS, steer angle and toe-in, of a block at the poses in X: all that bump steer needs."""
+    for lane in range(LANES):
+        r = _rotation(B[(X + 2) * LANES + lane], B[(X + 3) * LANES + lane], B[(X + 4) * LANES + lane])
+        ax, ay, _ = _turn(r, B[SPIN * LANES + lane], B[(SPIN + 1) * LANES + lane], B[(SPIN + 2) * LANES + lane])
+        B[OUT * LANES + lane] = _angle(-ax, ay)
+        B[(OUT + 1) * LANES + lane] = -B[SIDE * LANES + lane] * B[OUT * LANES + lane]
+
+
 @compiled
 def measure_poses(designs, poses, rack, travel, contact, columns, out):
     """Chosen COLUMNS of given poses: poses (N, M, 6), rack and travel (N or 1, M), columns (C,), out (N, M, C)."""
@@ -802,6 +812,9 @@ def solve_grid(
     start_grips = np.empty((rack.size, LANES))
     B = np.zeros(BLOCK * LANES)
     flat, target = poses.reshape(-1), out.reshape(-1)
+    heading_only = True
+    for c in range(C):
+        heading_only = heading_only and columns[c] < 2
     for first in range(0, designs.shape[0], LANES):
         _pack_block(designs, first, contact, B)
         _block_grid(
@@ -822,7 +835,10 @@ def solve_grid(
             for lane in range(LANES):
                 B[RACK_AT * LANES + lane] = rack[n // travel.size]
                 B[TRAVEL_AT * LANES + lane] = travel[n % travel.size]
-            _measure_block(B, contact)
+            if heading_only:
+                _heading_block(B)
+            else:
+                _measure_block(B, contact)
             _store_columns(B, first * count + n, count, lanes, columns, target)
 
 
