@@ -42,7 +42,7 @@ def test_every_sample_is_drawn_with_units_and_signs_on_its_axes(sample: Path) ->
             for label in (axes.get_xlabel(), axes.get_ylabel()):
                 assert not label or "(" in label, label
     words = texts(figures[0])
-    assert "bump steer (deg per wheel, toe-in +)" in words
+    assert "bump steer\n(deg per wheel, toe-in +)" in words
     assert "wheel travel (mm, bump +, rebound -)" in words
 
 

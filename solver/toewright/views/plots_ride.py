@@ -15,7 +15,7 @@ from toewright.model.axle import Axle
 from toewright.model.errors import InputError
 from toewright.model.glossary import axis_label, quantity
 from toewright.views.plots_sweep import TOE_CHANGE, check_cases, footer_of
-from toewright.views.style import MARKERS, QUIET, ROW, SERIES, results_figure, styled, zero_lines
+from toewright.views.style import MARKERS, QUIET, ROW, SERIES, label_y, results_figure, styled, zero_lines
 from toewright.views.words import case_labels
 
 if TYPE_CHECKING:
@@ -92,13 +92,13 @@ class _Rides:
                     fontsize=7.5,
                     color=QUIET,
                 )
-        axes.margins(x=0.34, y=0.14)
+        axes.margins(x=0.5, y=0.14)
         low, high = axes.get_xlim()
         if high - low < 4.0:
             middle = 0.5 * (low + high)
             axes.set_xlim(middle - 2.0, middle + 2.0)
         axes.set_xlabel(axis_label("roll_centre_y"))
-        axes.set_ylabel(axis_label("roll_centre_z"))
+        label_y(axes, axis_label("roll_centre_z"))
 
 
 def near_roll_centres(axle: Axle, y: FloatArray, z: FloatArray) -> tuple[FloatArray, FloatArray]:
@@ -116,7 +116,7 @@ def _panels(of: _Rides) -> list[_Panel]:
         def draw(axes: Axes) -> None:
             names = [(f"{stem}_{side}", side) for side in sides] if sides else [(stem, "")]
             of.curves(axes, motion, names)
-            axes.set_ylabel(label)
+            label_y(axes, label)
 
         return draw
 
@@ -165,7 +165,7 @@ def _panels(of: _Rides) -> list[_Panel]:
 def draw_ride_curves(axes: Axes, axles: Sequence[Axle], rides: Sequence[RideMaps], motion: str, name: str) -> None:
     """One column of one motion, of all files."""
     _Rides(axles, rides).curves(axes, motion, [(name, "")])
-    axes.set_ylabel(axis_label(name))
+    label_y(axes, axis_label(name))
 
 
 def ride_figure(axles: Sequence[Axle], rides: Sequence[RideMaps], *, plain: bool = False) -> Figure:

@@ -20,6 +20,7 @@ from toewright.views.style import (
     QUIET,
     ROW,
     SERIES,
+    label_y,
     results_figure,
     styled,
     toe_colours,
@@ -83,7 +84,7 @@ def draw_map(axes: Axes, rack: FloatArray, travel: FloatArray, field: FloatArray
         _draw_zero(axes, rack, travel, field)
     axes.set(xlim=(rack[0], rack[-1]), ylim=(travel[0], travel[-1]))
     axes.set_xlabel(axis_label("rack_travel"))
-    axes.set_ylabel(axis_label("wheel_travel"))
+    label_y(axes, axis_label("wheel_travel"))
     return filled
 
 
@@ -158,7 +159,7 @@ def _draw_curves(
             )
     zero_lines(axes, x=True, y=name != "camber")
     axes.set_xlabel(axis_label("wheel_travel"))
-    axes.set_ylabel(TOE_CHANGE if name == "bump_steer" else axis_label(name))
+    label_y(axes, TOE_CHANGE if name == "bump_steer" else axis_label(name))
 
 
 def panel_curves(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Sequence[CornerMaps], side: str) -> None:
@@ -198,7 +199,7 @@ def panel_over_rack(figure: Figure | SubFigure, axles: Sequence[Axle], maps: Seq
             )
         zero_lines(axes, x=True, y=name == "steer_angle")
         axes.set_xlabel(axis_label("rack_travel"))
-        axes.set_ylabel(axis_label(name))
+        label_y(axes, axis_label(name))
         axes.set_title(f"{side} wheel")
         if len(maps) > 1:
             axes.legend(loc="best")

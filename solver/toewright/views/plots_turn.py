@@ -15,7 +15,7 @@ from toewright.model.errors import InputError
 from toewright.model.glossary import axis_label
 from toewright.views.plots_sweep import check_cases, footer_of
 from toewright.views.sentences import SHOWN_FROM, largest_slip
-from toewright.views.style import MARKERS, QUIET, ROW, SERIES, results_figure, styled, zero_lines
+from toewright.views.style import MARKERS, QUIET, ROW, SERIES, label_y, results_figure, styled, zero_lines
 from toewright.views.words import case_labels
 
 if TYPE_CHECKING:
@@ -56,7 +56,7 @@ def _draw_steer(axes: Axes, turns: Sequence[TurnMaps], labels: Sequence[str]) ->
         )
     zero_lines(axes, x=True)
     axes.set_xlabel(axis_label("rack_travel"))
-    axes.set_ylabel(axis_label("steer_angle"))
+    label_y(axes, axis_label("steer_angle"))
     axes.set_title(
         "Steer angles" if single else "Steer angles: left wheel; dashed right wheel; dotted ideal inner wheel"
     )
@@ -107,7 +107,7 @@ def _draw_circles(axes: Axes, axles: Sequence[Axle], turns: Sequence[TurnMaps]) 
         axes.set_ylim(0.0, CIRCLE_SHARE * smallest)
         axes.legend(loc="lower left")
     axes.set_xlabel(STEER_SIZE)
-    axes.set_ylabel("turning circle, diameter (m, never negative)")
+    label_y(axes, "turning circle, diameter (m, never negative)")
     axes.set_title("Turning circle")
 
 
@@ -115,7 +115,7 @@ def draw_error(axes: Axes, axles: Sequence[Axle], turns: Sequence[TurnMaps]) -> 
     """Ackermann error over mean steer."""
     _draw_over_steer(axes, axles, turns, [t["ackermann_error"] for t in turns])
     zero_lines(axes)
-    axes.set_ylabel(axis_label("ackermann_error").replace(" (", "\n("))
+    label_y(axes, axis_label("ackermann_error"))
     axes.set_title("Ackermann error")
 
 
@@ -160,11 +160,11 @@ def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps], *, plain: bool
                 fontsize=7.5,
                 color=QUIET,
             )
-        percent.set_ylabel("Ackermann percent (%, - reverse)")
+        label_y(percent, "Ackermann percent (%, - reverse)")
         percent.set_title(f"Ackermann percent, by {turns[0].definition}")
         _draw_circles(panels["circle"], axles, turns)
         _draw_over_steer(slip, axles, turns, [largest_slip(t) for t in turns])
-        slip.set_ylabel("largest slip angle of the wheels (deg, size)")
+        label_y(slip, "largest slip angle of the wheels (deg, size)")
         slip.set_title("Tyre drag at walking pace")
         slip.set_ylim(bottom=0.0)
         for axes in (error, percent, slip):

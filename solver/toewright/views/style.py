@@ -143,6 +143,11 @@ def toe_colours() -> LinearSegmentedColormap:
     return LinearSegmentedColormap.from_list("toewright-toe", TOE_STOPS)
 
 
+def label_y(axes: Axes, label: str) -> None:
+    """Label of the upright axis: what it is, and below that unit and sign, so that it is no longer than its panel."""
+    axes.set_ylabel(label.replace(" (", "\n(", 1))
+
+
 def zero_lines(axes: Axes, *, x: bool = False, y: bool = True) -> None:
     """The lines of zero, a little stronger than the grid."""
     if x:
