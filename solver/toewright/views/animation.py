@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import replace
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -17,12 +17,18 @@ from toewright.views.scene.build import Pose, build_scene
 from toewright.views.scene.parts import Scene
 from toewright.views.style import styled
 
+if TYPE_CHECKING:
+    from PIL.Image import Image
+
 FRAMES_PER_SECOND = 16
 WIDTHS = {".gif": 1000, ".mp4": 1600}
 """Width (px) of each kind of film."""
 
-COLOURS = 72
-"""Colours of an animated .gif that are taken from a frame; the tones of the palette join them, and all frames share one table."""
+COLOURS = 96
+"""Colours of an animated .gif that are taken from a frame; the tones of the palette join them."""
+
+NEAR_WHITE = 248
+"""Colours lighter than this are left to white, so that paper stays white."""
 
 Picture = np.ndarray[Any, np.dtype[np.uint8]]
 
@@ -65,15 +71,28 @@ def there_and_back(count: int) -> list[int]:
     return [*range(count), *range(count - 2, 0, -1)]
 
 
+def colour_table(image: Image, count: int) -> Image:
+    """A table of colours for ``Image.quantize``: the tones of the palette, which a table made from areas alone would lose, and the
+    ``count`` most usual ones of a picture; 256 in all at most.
+    """
+    from PIL import Image as Pillow
+
+    tones = palette.tones()
+    usual = image.quantize(min(count, 256 - len(tones) // 3), dither=Pillow.Dither.NONE).getpalette() or []
+    table = Pillow.new("P", (1, 1))
+    other = [usual[k : k + 3] for k in range(0, len(usual), 3)]
+    kept = [value for colour in other if min(colour) < NEAR_WHITE for value in colour]
+    table.putpalette([*tones, *kept][:768])
+    return table
+
+
 def write_gif(place: Path, frames: Sequence[Picture]) -> None:
     """An endless .gif that runs there and back."""
-    from PIL import Image
+    from PIL import Image as Pillow
 
-    images = [Image.fromarray(frame) for frame in frames]
-    found = images[len(images) // 2].quantize(COLOURS, dither=Image.Dither.NONE).getpalette() or []
-    table = Image.new("P", (1, 1))
-    table.putpalette([*palette.tones(), *found[: 3 * COLOURS]])
-    small = [image.quantize(palette=table, dither=Image.Dither.NONE) for image in images]
+    images = [Pillow.fromarray(frame) for frame in frames]
+    table = colour_table(images[len(images) // 2], COLOURS)
+    small = [image.quantize(palette=table, dither=Pillow.Dither.NONE) for image in images]
     order = there_and_back(len(small))
     small[order[0]].save(
         place, format="GIF", save_all=True, append_images=[small[k] for k in order[1:]], loop=0,
@@ -115,6 +134,8 @@ def write_mp4(place: Path, frames: Sequence[Picture]) -> None:
                 image.set_data(frames[k][:height, :width])
                 writer.grab_frame()
     except (subprocess.CalledProcessError, BrokenPipeError) as error:
+        if isinstance(error.__context__, KeyboardInterrupt):
+            raise KeyboardInterrupt from error
         raise InputError(f"{place.suffix}: ffmpeg could not write the film ({error}); write a .gif instead") from error
 
 

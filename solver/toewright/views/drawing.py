@@ -41,6 +41,7 @@ HEAD = 66
 MARGIN = 24
 TEXT = 13.5
 LINE = 21.0
+LEAST_TITLE = 14.0
 ROOM = 118.0
 """Room (px) above, below and beside a view, shared by both ends, where names can go."""
 
@@ -179,7 +180,8 @@ def add_words(figure: Figure, scene: Scene, notes: Sequence[str], height: float,
         style: dict[str, object] = {"color": INK, "va": "baseline", "fontsize": 72.0 * size / DPI, **how}
         figure.text(x / WIDTH, 1.0 - y / total, text, **style)  # type: ignore[arg-type]
 
-    write(MARGIN + 8, 36, caption.title, 22.0, weight="bold")
+    title, size = fitted(caption.title, 22.0, WIDTH - 2 * MARGIN - 60.0 - text_width(caption.pose, 16.0))
+    write(MARGIN + 8, 36, title, size, weight="bold")
     write(WIDTH - MARGIN - 8, 36, caption.pose, 16.0, ha="right")
     figure.add_artist(_rule(MARGIN, WIDTH - MARGIN, 52, total))
     figure.add_artist(_rule(MARGIN, WIDTH - MARGIN, height + 4, total))
@@ -201,6 +203,15 @@ def add_words(figure: Figure, scene: Scene, notes: Sequence[str], height: float,
     for line in notes:
         y += LINE
         write(left, y, line, color=QUIET)
+
+
+def fitted(text: str, size: float, room: float) -> tuple[str, float]:
+    """A bold text and its size, px, made smaller and at last shorter until it fits into so much room."""
+    bold = 1.18
+    size = float(np.clip(size * room / max(bold * text_width(text, size), 1.0), LEAST_TITLE, size))
+    while text and bold * text_width(text, size) > room:
+        text = text.removesuffix("...")[:-1].rstrip() + "..."
+    return text, size
 
 
 def _rule(left: float, right: float, y: float, total: float) -> Artist:

@@ -53,9 +53,9 @@ def pixel(x, y):
     return [pixels.GetValue(4 * (32 * y + x) + channel) for channel in range(3)]
 corner, middle = pixel(1, 1), pixel(16, 16)
 drawn = min(corner) > 250 and middle[0] > 60 and max(middle[1:]) < 40
-print("drawn" if drawn else "blank", flush=True)
+sys.exit(0 if drawn else 1)
 """
-"""The child's program: a red ball on white, 32 by 32 pixels, read back."""
+"""The child's program: a red ball on white, 32 by 32 pixels, read back; it ends with 0 where they are right."""
 
 
 def candidates(environment: Mapping[str, str]) -> tuple[str, ...]:
@@ -78,14 +78,14 @@ def draws(window_class: str, environment: Mapping[str, str]) -> bool:
             [sys.executable, "-P", "-c", PROBE],
             env=child,
             stdin=subprocess.DEVNULL,
-            capture_output=True,
-            text=True,
+            stdout=subprocess.DEVNULL,
+            stderr=subprocess.DEVNULL,
             timeout=PATIENCE,
             check=False,
         )
     except (OSError, subprocess.TimeoutExpired):
         return False
-    return done.returncode == 0 and "drawn" in done.stdout
+    return done.returncode == 0
 
 
 def cache_folder(environment: Mapping[str, str]) -> Path:

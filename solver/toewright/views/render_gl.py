@@ -64,8 +64,8 @@ def add_scene(plotter: Any, scene: Scene, *, axes_too: bool) -> None:
         )
 
 
-def add_floor(plotter: Any, scene: Scene) -> None:
-    """The road with its grid."""
+def add_floor(plotter: Any, scene: Scene, line_width: float = 1.0) -> None:
+    """The road with its grid, whose lines are ``line_width`` px."""
     import pyvista
 
     plotter.add_mesh(
@@ -76,7 +76,7 @@ def add_floor(plotter: Any, scene: Scene) -> None:
     segments = np.column_stack([np.full(len(ends) // 2, 2), np.arange(len(ends)).reshape(-1, 2)])
     grid = pyvista.PolyData(ends, lines=segments.ravel())
     plotter.add_mesh(
-        grid, color=palette.GRID, line_width=1.5, lighting=False, name="grid", reset_camera=False, render=False
+        grid, color=palette.GRID, line_width=line_width, lighting=False, name="grid", reset_camera=False, render=False
     )
 
 
@@ -148,7 +148,7 @@ class Painter:
         plotter.window_size = [width, height]
         paper = abs(view.toward[2]) > SQUARE_ON
         if scene is not self._shown:
-            add_floor(plotter, scene)
+            add_floor(plotter, scene, 0.75 * self.oversampling)
             add_scene(plotter, scene, axes_too=False)
             self._shown = scene
         plotter.actors["floor"].SetVisibility(not paper)

@@ -74,9 +74,10 @@ def bar_outline(
     normal = np.array([-direction[1], direction[0]])
     roundness = abs(depth) / whole if whole > 0.0 else 1.0
     angle = np.linspace(-0.5 * np.pi, 0.5 * np.pi, 9)
-    across, bulge = radius * np.sin(angle)[:, np.newaxis] * normal, radius * np.cos(angle)[:, np.newaxis] * direction
-    first, second = (roundness * bulge if cap else 0.0 * bulge for cap in caps)
-    return np.concatenate([end[:2] + across + second, start[:2] - across - first])
+    cap = np.sin(angle)[:, np.newaxis] * normal + roundness * np.cos(angle)[:, np.newaxis] * direction
+    straight = np.stack([-normal, normal])
+    first, second = (radius * (cap if capped else straight) for capped in caps)
+    return np.concatenate([end[:2] + second, start[:2] - first])
 
 
 def circle(centre: FloatArray, radius: float) -> FloatArray:
@@ -129,7 +130,8 @@ def path_polygons(part: Path, view: View, scene: Scene) -> Iterator[Polygon]:
     points = view.project(part.points)
     for a in range(len(points) - 1):
         depth = float(max(points[a, 2], points[a + 1, 2])) + 6.0 * part.radius
-        yield depth, bar_outline(points[a], points[a + 1], part.radius), 0.5 * (colours[a] + colours[a + 1])
+        caps = a == 0, a == len(points) - 2
+        yield depth, bar_outline(points[a], points[a + 1], part.radius, caps), 0.5 * (colours[a] + colours[a + 1])
 
 
 def outline_of(body: Revolution, view: View) -> FloatArray:

@@ -26,7 +26,7 @@ from toewright.views.scene.linkage import (
     joint_labels,
     rack_parts,
 )
-from toewright.views.scene.parts import Bounds, Caption, ColourScale, Floor, Part, Path, Revolution, Scene
+from toewright.views.scene.parts import Bounds, Caption, ColourScale, Floor, Part, Path, Scene
 from toewright.views.scene.wheel import wheel_size
 from toewright.views.words import number, travel_words
 
@@ -147,8 +147,7 @@ def faded(part: Part, prefix: str) -> Part:
     """The same part as a ghost."""
     if isinstance(part, Path):
         return part
-    strength = palette.GHOST * (part.opacity if isinstance(part, Revolution) else 1.0)
-    return replace(part, name=prefix + part.name, opacity=strength)
+    return replace(part, name=prefix + part.name, opacity=palette.GHOST * part.opacity)
 
 
 def locus_parts(

@@ -52,4 +52,5 @@ def tones() -> list[int]:
         for name in named
         for share in (-0.6, -0.35, -0.15, 0.0, 0.2, 0.45, 0.75)
     ]
-    return [int(value) for value in np.round(255.0 * np.array([*mixed, to_rgb(PAPER)])).ravel()]
+    scale = bump_steer_colours()(np.linspace(0.0, 1.0, 17))[:, :3]
+    return [int(value) for value in np.round(255.0 * np.array([*mixed, *scale, to_rgb(PAPER)])).ravel()]
