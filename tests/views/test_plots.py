@@ -76,17 +76,13 @@ def test_what_cannot_be_reached_is_hatched_and_said() -> None:
     assert not any(axes.patch.get_hatch() for axes in near.axes)
 
 
-def test_a_map_without_bump_steer_is_drawn() -> None:
+def test_a_map_without_bump_steer_says_so() -> None:
     maps = tw.sweep(FRONT)
     level = np.zeros_like(maps["bump_steer"][0])
     with styled():
-        draw_map(
-            new_figure(4.0, 3.0, "", "").subplots(),
-            maps.rack_travel,
-            maps.wheel_travel,
-            level,
-            symmetric_levels([level]),
-        )
+        figure = new_figure(4.0, 3.0, "", "")
+        draw_map(figure.subplots(), maps.rack_travel, maps.wheel_travel, level, symmetric_levels([level]))
+    assert "no toe change" in texts(figure)
 
 
 def test_files_laid_over_each_other_have_letters_colours_and_marks() -> None:

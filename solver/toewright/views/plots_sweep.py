@@ -82,6 +82,8 @@ def draw_map(axes: Axes, rack: FloatArray, travel: FloatArray, field: FloatArray
         lines.set_linestyle("solid")
         axes.clabel(lines, fmt=lambda v: number(v, places), fontsize=7.5, colors=MAP_INK, inline_spacing=3)
         _draw_zero(axes, rack, travel, field)
+    elif sizes.size:
+        axes.text(0.5, 0.5, "no toe change", transform=axes.transAxes, ha="center", va="center", color=MAP_INK)
     axes.set(xlim=(rack[0], rack[-1]), ylim=(travel[0], travel[-1]))
     axes.set_xlabel(axis_label("rack_travel"))
     label_y(axes, axis_label("wheel_travel"))

@@ -46,6 +46,9 @@ def _draw_steer(axes: Axes, turns: Sequence[TurnMaps], labels: Sequence[str]) ->
             rack, turned["steer_right"], color=right, linestyle="--", label="right wheel" if single else "_right wheel"
         )
         shown = np.where(np.abs(turned["mean_steer"]) >= SHOWN_FROM, turned["ideal_inner_steer"], np.nan)
+        shown[1:][np.abs(np.diff(shown)) > 90.0] = (
+            np.nan
+        )  # beyond 90 deg the inner wheel would have to point the other way
         axes.plot(
             rack,
             shown,
