@@ -24,37 +24,53 @@ if TYPE_CHECKING:
     from toewright.model.errors import InputError
     from toewright.model.files import load, loads
     from toewright.studies.comparison import Comparison, compare
+    from toewright.studies.goals import parse_goal
     from toewright.studies.locus import Locus, locus
+    from toewright.studies.residuals import parse_free
+    from toewright.studies.sensitivity import Sensitivity, parse_figure, sensitivity
     from toewright.studies.shims import ShimTable, shims
+    from toewright.studies.tolerance import Tolerance, tolerance
+    from toewright.studies.tuning import Tuning, tune
+    from toewright.studies.verdicts import check_targets
     from toewright.views.report import write_report
 
 __version__ = "0.1.0"
 
 _HOMES = {
-    "Comparison": "toewright.studies.comparison",
-    "compare": "toewright.studies.comparison",
-    "write_report": "toewright.views.report",
     "Axle": "toewright.model.axle",
     "AxleLimits": "toewright.kinematics.limits",
+    "Comparison": "toewright.studies.comparison",
     "Corner": "toewright.model.axle",
     "CornerMaps": "toewright.kinematics.maps",
     "InputError": "toewright.model.errors",
     "Locus": "toewright.studies.locus",
     "RideMaps": "toewright.kinematics.riding",
+    "Sensitivity": "toewright.studies.sensitivity",
     "ShimTable": "toewright.studies.shims",
     "Slopes": "toewright.kinematics.slopes",
     "Stop": "toewright.kinematics.maps",
+    "Tolerance": "toewright.studies.tolerance",
+    "Tuning": "toewright.studies.tuning",
     "TurnMaps": "toewright.kinematics.turning",
+    "check_targets": "toewright.studies.verdicts",
+    "compare": "toewright.studies.comparison",
     "design_pose": "toewright.kinematics.sweep",
     "limits": "toewright.kinematics.limits",
     "load": "toewright.model.files",
     "loads": "toewright.model.files",
     "locus": "toewright.studies.locus",
+    "parse_figure": "toewright.studies.sensitivity",
+    "parse_free": "toewright.studies.residuals",
+    "parse_goal": "toewright.studies.goals",
     "ride": "toewright.kinematics.riding",
+    "sensitivity": "toewright.studies.sensitivity",
     "shims": "toewright.studies.shims",
     "slopes": "toewright.kinematics.slopes",
     "sweep": "toewright.kinematics.sweep",
+    "tolerance": "toewright.studies.tolerance",
+    "tune": "toewright.studies.tuning",
     "turn": "toewright.kinematics.turning",
+    "write_report": "toewright.views.report",
 }
 
 __all__ = [
@@ -66,20 +82,30 @@ __all__ = [
     "InputError",
     "Locus",
     "RideMaps",
+    "Sensitivity",
     "ShimTable",
     "Slopes",
     "Stop",
+    "Tolerance",
+    "Tuning",
     "TurnMaps",
+    "check_targets",
     "compare",
     "design_pose",
     "limits",
     "load",
     "loads",
     "locus",
+    "parse_figure",
+    "parse_free",
+    "parse_goal",
     "ride",
+    "sensitivity",
     "shims",
     "slopes",
     "sweep",
+    "tolerance",
+    "tune",
     "turn",
     "write_report",
 ]

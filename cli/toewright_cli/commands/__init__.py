@@ -11,6 +11,7 @@ COMMANDS: Mapping[str, tuple[str, str]] = {
     "sweep": ("sweep", "sweep"),
     "turn": ("turn", "turn"),
     "ride": ("ride", "ride"),
+    "sensitivity": ("sensitivity", "sensitivity"),
     "tune": ("tune", "tune"),
     "locus": ("locus", "locus"),
     "tolerance": ("tolerance", "tolerance"),

@@ -120,12 +120,12 @@ def jacobian(axle: Axle, goals: Sequence[Goal], free: Sequence[Free]) -> FloatAr
     rows = []
     for goal in goals:
         values = measure(axle, goal).values
-        slopes = _corner_slopes(axle, goal, free) if goal.kind == "corner" else _differences(axle, goal, free)
+        slopes = corner_slopes(axle, goal, free) if goal.kind == "corner" else axle_slopes(axle, goal, free)
         rows.append(_residual(goal, values)[1][:, np.newaxis] * np.where(np.isfinite(slopes), slopes, 0.0))
     return np.concatenate(rows)
 
 
-def _corner_slopes(axle: Axle, goal: Goal, free: Sequence[Free]) -> FloatArray:
+def corner_slopes(axle: Axle, goal: Goal, free: Sequence[Free]) -> FloatArray:
     """Exact slopes (K, F) of a corner figure by the free moves, the rack following where the steer is given."""
     rack, travel = rack_positions(axle, goal), travel_positions(goal)
     both = np.append(travel, 0.0)
@@ -168,7 +168,7 @@ def _rack_follows(axle: Axle, goal: Goal, free: Sequence[Free], rack: FloatArray
     return -by_free / by_rack[:, np.newaxis]
 
 
-def _differences(axle: Axle, goal: Goal, free: Sequence[Free]) -> FloatArray:
+def axle_slopes(axle: Axle, goal: Goal, free: Sequence[Free]) -> FloatArray:
     """Five-point differences (K, F) of a figure of the whole axle; each evaluation is an exact solve."""
     columns = []
     for k in range(len(free)):
