@@ -35,8 +35,15 @@ def test_it_tells_what_moved_and_what_it_does(cli: Cli, raised: Path) -> None:
     assert "bump-steer rate +5.59 -4.6" in squeezed
     assert "Largest change of bump steer from A to B: 0.312 deg per wheel towards toe-in" in squeezed
     assert "Turning, at rack +30.0 mm" in squeezed
+    assert "Change of bump steer from A to B, left wheel: deg per wheel, toe-in +" in squeezed
     tables = [line for line in result.out.splitlines() if line.startswith(" ") and ".toml" not in line]
     assert max(map(len, tables)) <= 100
+
+
+def test_what_is_not_reached_is_a_dash(cli: Cli, raised: Path) -> None:
+    result = cli("compare", FRONT, raised, "--rack", "-60,0,60", "--travel", "-10,0,10")
+    assert result.code == 0
+    assert "A dash: not reached in one of the two files." in result.out
 
 
 def test_three_files_and_unequal_sides_fit(cli: Cli, raised: Path) -> None:

@@ -48,3 +48,14 @@ def test_a_single_pose_is_no_picture(cli: Cli, tmp_path: Path) -> None:
     assert result.code == 2
     assert "make no curve" in result.err
     assert list(tmp_path.iterdir()) == []
+
+
+def test_an_overlay_without_a_rack_is_refused_where_the_rack_moves(cli: Cli, tmp_path: Path) -> None:
+    rear = HARDPOINTS / "marten_rear.toml"
+    result = cli("ride", FRONT, "--rack", "5", "--plot", tmp_path / "p.png", "--overlay", rear)
+    assert "marten_rear.toml: has no [rack], so --rack 5 means nothing" in result.complaint
+    result = cli("turn", FRONT, "--plot", tmp_path / "p.png", "--overlay", rear)
+    assert result.code == 2
+    assert "marten_rear.toml: has no [rack], so it has no turn to draw" in result.err
+    assert list(tmp_path.iterdir()) == []
+    assert cli("sweep", FRONT, "--plot", tmp_path / "p.png", "--overlay", rear).code == 0

@@ -74,10 +74,11 @@ def ride(
         raise InputError(f"--roll {roll}: angles of 45 deg and more are no roll of a car on its wheels; ask for less")
     axle = load(file)
     at_rack = parse_number(rack, "--rack") or 0.0
-    if at_rack and axle.rack is None:
-        raise InputError(
-            f"{file}: has no [rack], so --rack {at_rack:g} means nothing; leave --rack out, or add a [rack] table"
-        )
+    for of in (axle, *overlaid):
+        if at_rack and of.rack is None:
+            raise InputError(
+                f"{of.path}: has no [rack], so --rack {at_rack:g} means nothing; leave --rack out, or add a [rack] table"
+            )
     scale = toe_scale(axle, toe_unit or ToeUnit.DEG, toe_diameter, False)
     notice_compilation()
     with working("riding"):

@@ -20,6 +20,9 @@ if TYPE_CHECKING:
 ROWS = 11
 """Rows of the compact curves, about."""
 
+MAP_ROWS, MAP_COLUMNS = 7, 7
+"""Wheel and rack travels of a compact map, about."""
+
 
 def print_comparison(compared: Comparison) -> None:
     """Points and settings that differ, design sheets, curves, and what the whole axle does; each with the change from A."""
@@ -40,6 +43,8 @@ def print_comparison(compared: Comparison) -> None:
         whose = "each side (mirror images)" if compared.mirrored else f"{side} side"
         _print_rows(f"Design position, {whose}", headings, sheet_rows(compared, side))
         _print_curve(compared, side)
+        for k in range(1, len(axles)):
+            _print_change(compared, k, side)
     _print_rows("Whole axle in the design position", headings, compared.rest)
     if compared.lock:
         _print_rows(f"Turning, at rack {number(compared.lock_rack, 1)} mm", headings, compared.lock)
@@ -94,6 +99,28 @@ def _print_curve(compared: Comparison, side: str) -> None:
         )
     headings = ["wheel travel\nmm, bump +", *sheet_headings(count)[1:-1]]
     print_table(headings, rows, right=range(len(headings)))
+
+
+def _print_change(compared: Comparison, k: int, side: str) -> None:
+    """Change of bump steer of file k from the first over rack and wheel travel."""
+    maps = compared.maps[k]
+    if maps.rack_travel.size < 2 or maps.wheel_travel.size < 2:
+        return
+    change = compared.change(k, "bump_steer")[maps.side_index(side)]
+    columns, lines = (
+        spread_indices(axis.size, count, int(np.argmin(np.abs(axis))))
+        for axis, count in ((maps.rack_travel, MAP_COLUMNS), (maps.wheel_travel, MAP_ROWS))
+    )
+    say("")
+    say(f"Change of bump steer from A to {'ABCDEF'[k]}, {side} wheel: deg per wheel, toe-in +", style="bold")
+    headings = ["wheel travel\nmm, bump +", *(f"rack\n{number(float(maps.rack_travel[i]), 1)} mm" for i in columns)]
+    rows = [
+        [number(float(maps.wheel_travel[j]), 1), *(number(float(change[i, j]), 3) for i in columns)]
+        for j in reversed(lines)
+    ]
+    print_table(headings, rows, right=range(len(headings)))
+    if not np.all(np.isfinite(change)):
+        say("A dash: not reached in one of the two files.")
 
 
 def comparison_document(compared: Comparison, *, full: bool) -> dict[str, Any]:

@@ -131,10 +131,12 @@ def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps], *, plain: bool
         plain: without title and foot.
 
     Raises:
-        InputError: if no position reaches SHOWN_FROM deg of mean steer.
+        InputError: for an axle without a rack, or if no position reaches SHOWN_FROM deg of mean steer.
     """
     check_cases(axles, turns)
     for axle, turned in zip(axles, turns, strict=True):
+        if axle.rack is None:
+            raise InputError(f"{axle.path or axle.title}: has no [rack], so it has no turn to draw; leave it out")
         if not np.any(np.abs(turned["mean_steer"]) >= SHOWN_FROM):
             raise InputError(
                 f"{axle.path or axle.title}: no rack position reaches {SHOWN_FROM:g} deg of mean steer, where the plots of a turn "
