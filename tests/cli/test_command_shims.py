@@ -56,3 +56,12 @@ def test_refusals_are_one_sentence(cli: Cli, arguments: list[str], words: str) -
     result = cli("shims", *arguments)
     assert result.code == 2
     assert words in result.complaint
+
+
+def test_sheet_as_pdf(cli: Cli, tmp_path: Path) -> None:
+    from toewright.views.browser import find_browser
+
+    if find_browser() is None:
+        pytest.skip("no Chromium on this machine")
+    assert cli("shims", FRONT, "--sheet", tmp_path / "sheet.pdf").code == 0
+    assert (tmp_path / "sheet.pdf").read_bytes().startswith(b"%PDF")

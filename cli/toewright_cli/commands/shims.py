@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from enum import StrEnum
 from pathlib import Path
+from tempfile import TemporaryDirectory
 from typing import Annotated
 
 import typer
@@ -14,7 +15,7 @@ from toewright_cli.outputs import check_out, save_results
 from toewright_cli.progress import notice_compilation, working
 from toewright_cli.toe import ToeDiameterOption, ToeUnitOption, workshop_scale
 
-SHEETS = (".html",)
+SHEETS = (".html", ".pdf")
 
 
 class OneSide(StrEnum):
@@ -37,7 +38,8 @@ def shims(
     toe_unit: ToeUnitOption = None,
     toe_diameter: ToeDiameterOption = None,
     sheet: Annotated[
-        Path | None, typer.Option("--sheet", metavar="FILE", help="One page to print for the workshop: .html.")
+        Path | None,
+        typer.Option("--sheet", metavar="FILE", help="One page for the workshop: .html, or .pdf (with Chromium)."),
     ] = None,
     out_file: Out = None,
     force: Force = False,
@@ -65,9 +67,16 @@ def shims(
     if out_file is not None:
         save_results(out_file, force, lambda: long_table(found), lambda: shims_document(axle, found), found.to_xarray)
     if sheet is not None:
+        from toewright.views.browser import print_pdf
         from toewright.views.shim_sheet import shim_page
 
-        write_text(sheet, shim_page(axle, found, scale), force=force)
+        page = shim_page(axle, found, scale)
+        if sheet.suffix.lower() == ".html":
+            write_text(sheet, page, force=force)
+        else:
+            with working(f"printing {sheet}"), TemporaryDirectory(prefix="toewright-") as folder:
+                (Path(folder) / "sheet.html").write_text(page, encoding="utf-8")
+                print_pdf(Path(folder) / "sheet.html", sheet, force=force)
     if as_json:
         print_json(shims_document(axle, found))
         return

@@ -28,7 +28,7 @@ QUIET_FLAGS = (
 PATIENCE = 90.0
 """Seconds after which printing is given up."""
 
-MISSING = "--pdf: printing needs Chromium, and none is installed here; on Debian `apt install chromium`, or print the HTML page yourself"
+MISSING = "printing needs Chromium, and none is installed here; on Debian `apt install chromium`, or print the HTML page yourself"
 
 
 def find_browser() -> str | None:
