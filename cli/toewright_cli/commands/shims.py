@@ -45,7 +45,7 @@ def shims(
     force: Force = False,
     as_json: AsJson = False,
 ) -> None:
-    """Table of what every adjuster in the file's [adjusters] does to bump steer, toe, camber and caster, step by step.
+    """Table of what every adjuster that the file declares does to bump steer, toe, camber and caster, step by step.
 
     Example: toewright shims hardpoints/marten_front.toml --ride-height -4 --toe-unit mm --sheet workshop.html
     """

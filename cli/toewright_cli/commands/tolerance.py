@@ -36,7 +36,7 @@ def tolerance(
     force: Force = False,
     as_json: AsJson = False,
 ) -> None:
-    """Build the axle many times with the scatter in the file's [tolerance]: bands of bump steer, yield of targets, who is to blame.
+    """Build the axle many times with the scatter that the file's tolerance table declares: bands of bump steer, yield of targets, who is to blame.
 
     Ctrl-C ends it early and shows what is done.
 
