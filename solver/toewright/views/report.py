@@ -87,7 +87,7 @@ def write_report(
         sections=[glance_section(sections), *sections],
         cautions=CAUTIONS,
         trace=_trace(axle, against, moment),
-        source=_source(axle),
+        source=source_text(axle),
         made=f"{moment:%Y-%m-%d %H:%M} UTC",
         version=__version__,
     )
@@ -138,7 +138,7 @@ def _trace(axle: Axle, against: Axle | None, moment: datetime) -> list[tuple[str
     return rows
 
 
-def _source(axle: Axle) -> str | None:
+def source_text(axle: Axle) -> str | None:
     """The text of the input file, when it still is the one that was read."""
     import hashlib
 
