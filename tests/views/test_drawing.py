@@ -165,6 +165,7 @@ def test_a_film_runs_there_and_back(axle: tw.Axle, tmp_path: Path, along: str) -
     scenes = animation.swept_scenes(axle, along, [-10.0, 0.0, 10.0], Pose(), sides=("left",), travel_at="wheel-centre")
     frames = list(animation.pictures(scenes, paint, "front", 400))
     assert frames[0].shape[1] == 400
+    assert animation.there_and_back(4) == [0, 1, 2, 3, 2, 1]
     path = tmp_path / "film.gif"
     animation.write_gif(path, frames)
     with Image.open(path) as film:

@@ -10,10 +10,10 @@ import pytest
 
 import toewright as tw
 from toewright.kinematics.joints import UPRIGHT_POINTS
+from toewright.kinematics.sheet import LINKS
 from toewright.model.axle import POINT_NAMES
 from toewright.views.scene import palette
 from toewright.views.scene.build import Pose, build_scene
-from toewright.views.scene.linkage import LEGS
 from toewright.views.scene.meshes import part_surface
 from toewright.views.scene.parts import Ball, Revolution, Scene, Tube
 from toewright.views.scene.parts import Path as Curve
@@ -53,9 +53,9 @@ def test_links_end_in_the_solved_joints(sample: str) -> None:
     maps = tw.sweep(axle, [pose.rack], [pose.travel])
     for s, side in enumerate(maps.sides):
         joints = {name: values[0, 0] for name, values in maps.joints[s].items()}
-        for words, start, end, _, _ in LEGS:
-            if start in joints and end in joints:
-                link = tube(scene, f"{side} {words}")
+        for words, start, end in LINKS[axle.corner(side).kind]:
+            if not words.startswith("ball joint"):
+                link = tube(scene, f"{side} {words.replace(',', '')}")
                 np.testing.assert_allclose(link.start, joints[start], rtol=0.0, atol=EXACT)
                 np.testing.assert_allclose(link.end, joints[end], rtol=0.0, atol=EXACT)
                 points = part_surface(link, None).points
