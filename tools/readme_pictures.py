@@ -32,8 +32,11 @@ COMMANDS = {
         "rack=-60",
     ],
     "ibex_oblique.png": ["draw", "hardpoints/ibex_front.toml", "--view", "oblique", "--pose", "rack=40,travel=60"],
+    "marten_map.png": ["sweep", "hardpoints/marten_front.toml"],
+    "marten_places.png": ["locus", "hardpoints/marten_front.toml", "--rack", "0,20"],
+    "marten_scatter.png": ["tolerance", "hardpoints/marten_front.toml", "--builds", "100000"],
 }
-"""Picture and the command that draws it; ``-o`` is added."""
+"""Picture and the command that draws it; ``-o``, or ``--plot`` where the picture goes with a table, is added."""
 
 
 def reduced(path: Path) -> Image.Image:
@@ -50,7 +53,7 @@ def main() -> int:
         for name, command in COMMANDS.items():
             drawn = Path(folder) / name
             words = [str(ROOT / word) if word.startswith("hardpoints/") else word for word in command]
-            if run([*words, "-o", str(drawn)]) != 0:
+            if run([*words, "-o" if words[0] == "draw" else "--plot", str(drawn)]) != 0:
                 return 2
             reduced(drawn).save(FOLDER / name, optimize=True)
             if (FOLDER / name).stat().st_size > LARGEST:
