@@ -23,7 +23,10 @@ SIZE = (1280, 860)
 TRAVEL_FACTOR = 1.6
 """Reach of the slider of wheel travel over the usual range of a sweep."""
 
-HELP = "drag: turn   shift + drag: shift   wheel: nearer   n: names   1 2 3 4: front, side, top, oblique   q: close"
+VIEW_KEYS = "5678"
+"""Keys of the views; VTK itself takes 3 for a stereo picture."""
+
+HELP = "drag: turn   shift + drag: shift   wheel: nearer   n: names   5 6 7 8: front, side, top, oblique   q: close"
 
 
 def figures_text(scene: Scene) -> str:
@@ -68,7 +71,7 @@ class LinkageWindow:
         self.show_pose()
         self.look_from("oblique")
         self._add_sliders()
-        for key, name in zip("1234", VIEWS, strict=True):
+        for key, name in zip(VIEW_KEYS, VIEWS, strict=True):
             self.plotter.add_key_event(key, lambda name=name: self.look_from(name))
         self.plotter.add_key_event("n", self.toggle_names)
 
@@ -126,11 +129,11 @@ class LinkageWindow:
 
     def move_rack(self, rack: float) -> None:
         """Move the rack to a travel in mm."""
-        self.move(Pose(round(float(rack), 3), self.pose.travel))
+        self.move(Pose(round(float(rack), 1), self.pose.travel))
 
     def move_travel(self, travel: float) -> None:
         """Move the wheels to a travel in mm."""
-        self.move(Pose(self.pose.rack, round(float(travel), 3)))
+        self.move(Pose(self.pose.rack, round(float(travel), 1)))
 
     def move(self, pose: Pose) -> None:
         """Show a pose; one that cannot be reached leaves the picture as it is and says why."""
