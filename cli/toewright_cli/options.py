@@ -68,6 +68,13 @@ class SideChoice(StrEnum):
         return ("left", "right") if self is SideChoice.BOTH else (self.value,)
 
 
+class OneSide(StrEnum):
+    """One corner."""
+
+    LEFT = "left"
+    RIGHT = "right"
+
+
 TravelAtOption = Annotated[TravelAt, typer.Option("--travel-at", help="What the wheel travel is the height of.")]
 SideOption = Annotated[SideChoice, typer.Option("--side", help="Which corners.")]
 

@@ -9,6 +9,7 @@ import sys
 import time
 from pathlib import Path
 
+import matplotlib
 import numpy as np
 import pytest
 from command_line import Cli
@@ -140,6 +141,21 @@ def test_mp4_without_an_encoder_is_refused(cli: Cli, monkeypatch: pytest.MonkeyP
     assert done.complaint == (
         "toewright: an .mp4 needs ffmpeg, which is not on the path; install it, or write a .gif instead"
     )
+
+
+def test_an_encoder_that_breaks_off_is_one_sentence(cli: Cli, monkeypatch: pytest.MonkeyPatch, tmp_path: Path) -> None:
+    broken = tmp_path / "bin" / "ffmpeg"
+    broken.parent.mkdir()
+    broken.write_text("#!/bin/sh\nexec 0<&-\nexit 3\n")
+    broken.chmod(0o755)
+    monkeypatch.setattr("matplotlib.animation.FFMpegWriter.isAvailable", lambda: True)
+    with matplotlib.rc_context({"animation.ffmpeg_path": str(broken)}):
+        done = cli(
+            "draw", MARTEN, "--rack", "-10,10", "--view", "top", "--renderer", "vector", "-o", tmp_path / "a.mp4"
+        )
+    assert done.code == 2
+    assert done.err.splitlines()[-1].startswith("toewright: ffmpeg broke off while it wrote the .mp4")
+    assert [path.name for path in tmp_path.iterdir()] == ["bin"]
 
 
 def test_mp4_where_there_is_an_encoder(cli: Cli, tmp_path: Path) -> None:

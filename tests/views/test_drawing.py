@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import runpy
 import xml.etree.ElementTree as ET
 from itertools import combinations
 from pathlib import Path
@@ -217,6 +218,15 @@ def test_stl_has_named_solids_in_mm(axle: tw.Axle, scene: Scene, tmp_path: Path)
     bounds = build_scene(axle, [Pose(15.0, -10.0), Pose(-25.0, 10.0)]).bounds
     np.testing.assert_allclose(low, bounds.low, atol=8.0)
     np.testing.assert_allclose(high, bounds.high, atol=8.0)
+
+
+def test_the_pictures_of_the_readme_are_there_and_small() -> None:
+    script = runpy.run_path(str(ROOT / "tools" / "readme_pictures.py"))
+    for name in script["COMMANDS"]:
+        path = script["FOLDER"] / name
+        assert path.stat().st_size <= script["LARGEST"]
+        with Image.open(path) as image:
+            assert image.width == script["WIDTH"]
 
 
 def test_bars_and_balls_are_closed_surfaces_seen_from_outside(scene: Scene) -> None:

@@ -11,7 +11,7 @@ import typer
 
 from toewright_cli.commands.new import Starter
 from toewright_cli.console import print_remarks, print_table, say
-from toewright_cli.options import Force
+from toewright_cli.options import Force, OneSide
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
@@ -26,13 +26,6 @@ class Unit(StrEnum):
     MM = "mm"
     M = "m"
     IN = "in"
-
-
-class OneSide(StrEnum):
-    """One corner."""
-
-    LEFT = "left"
-    RIGHT = "right"
 
 
 class AxleChoice(StrEnum):

@@ -3,17 +3,25 @@
 from __future__ import annotations
 
 from enum import StrEnum
-from pathlib import Path
 from typing import Annotated
 
 import typer
 
-from toewright_cli.console import print_json, print_remarks, say
-from toewright_cli.options import AsJson, Force, HardpointFile, Out, TravelList, parse_list, parse_number, parse_rack
+from toewright_cli.console import print_json, print_remarks
+from toewright_cli.options import (
+    AsJson,
+    Force,
+    HardpointFile,
+    OneSide,
+    Out,
+    TravelList,
+    parse_list,
+    parse_number,
+    parse_rack,
+)
 from toewright_cli.outputs import check_out, save_results
+from toewright_cli.pictures import Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
-
-PICTURES = (".png", ".svg", ".pdf")
 
 
 class PlaneChoice(StrEnum):
@@ -21,13 +29,6 @@ class PlaneChoice(StrEnum):
 
     FRONT = "front"
     TOP = "top"
-
-
-class OneSide(StrEnum):
-    """One corner."""
-
-    LEFT = "left"
-    RIGHT = "right"
 
 
 def locus(
@@ -49,9 +50,7 @@ def locus(
     reach: Annotated[
         float, typer.Option("--reach", metavar="MM", help="How far about the joint places are tried.")
     ] = 40.0,
-    plot: Annotated[
-        Path | None, typer.Option("--plot", metavar="FILE", help="Picture of the places: .png, .svg or .pdf.")
-    ] = None,
+    plot: Plot = None,
     out_file: Out = None,
     force: Force = False,
     as_json: AsJson = False,
@@ -61,7 +60,7 @@ def locus(
     Example: toewright locus hardpoints/marten_front.toml --rack 0,20 --limit 0.03 --plot places.png
     """
     check_out(out_file, force)
-    check_out(plot, force, PICTURES, "--plot")
+    check_plot(plot, None, force)
     from toewright.model.files import load
     from toewright.studies.locus import locus as solve
     from toewright_cli.show.locus import locus_document, locus_table, print_locus
@@ -85,14 +84,10 @@ def locus(
         save_results(out_file, force, lambda: locus_table(found), lambda: locus_document(axle, found), found.to_xarray)
     if plot is not None:
         from toewright.views.plots_locus import locus_figure
-        from toewright.views.style import save_figure
 
-        with working(f"drawing {plot}"):
-            save_figure(locus_figure(f"{axle.title}: places of the inner tie rod joint", found), plot, force=force)
+        draw(plot, force, lambda: locus_figure(f"{axle.title}: places of the inner tie rod joint", found))
     if as_json:
         print_json(locus_document(axle, found))
         return
     print_remarks(axle.remarks)
     print_locus(axle, found)
-    if plot is not None:
-        say(f"Picture: {plot}")

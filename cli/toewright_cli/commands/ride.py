@@ -9,7 +9,17 @@ import typer
 
 from toewright.views.toe import ToeUnit
 from toewright_cli.console import print_definitions, print_json, print_remarks
-from toewright_cli.options import AsJson, Explain, Force, HardpointFile, Out, TravelList, parse_list, parse_number
+from toewright_cli.options import (
+    AsJson,
+    Explain,
+    Force,
+    HardpointFile,
+    OneSide,
+    Out,
+    TravelList,
+    parse_list,
+    parse_number,
+)
 from toewright_cli.outputs import check_out, save_results
 from toewright_cli.pictures import FINE, Overlay, Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
@@ -22,13 +32,6 @@ class MotionChoice(StrEnum):
     BUMP = "bump"
     ROLL = "roll"
     SINGLE = "single"
-
-
-class OneSide(StrEnum):
-    """The wheel that moves."""
-
-    LEFT = "left"
-    RIGHT = "right"
 
 
 def ride(

@@ -2,17 +2,15 @@
 
 from __future__ import annotations
 
-from pathlib import Path
 from typing import Annotated
 
 import typer
 
-from toewright_cli.console import print_json, print_remarks, say
+from toewright_cli.console import print_json, print_remarks
 from toewright_cli.options import AsJson, Force, HardpointFile, Out, parse_number
 from toewright_cli.outputs import check_out, save_results
+from toewright_cli.pictures import Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
-
-PICTURES = (".png", ".svg", ".pdf")
 
 
 def sensitivity(
@@ -33,7 +31,7 @@ def sensitivity(
         bool, typer.Option("--as-built", help="Parts keep their dimensions; toe and camber are not set again.")
     ] = False,
     top: Annotated[int, typer.Option("--top", metavar="N", help="Coordinates shown for each figure.")] = 6,
-    plot: Annotated[Path | None, typer.Option("--plot", metavar="FILE", help="Bars: .png, .svg or .pdf.")] = None,
+    plot: Plot = None,
     out_file: Out = None,
     force: Force = False,
     as_json: AsJson = False,
@@ -43,7 +41,7 @@ def sensitivity(
     Example: toewright sensitivity hardpoints/marten_front.toml --figure "bump_steer travel 25" --plot bars.png
     """
     check_out(out_file, force)
-    check_out(plot, force, PICTURES, "--plot")
+    check_plot(plot, None, force)
     from toewright.model.errors import InputError
     from toewright.model.files import load
     from toewright.studies.sensitivity import parse_figure
@@ -68,13 +66,10 @@ def sensitivity(
         )
     if plot is not None:
         from toewright.views.plots_sensitivity import sensitivity_figure
-        from toewright.views.style import save_figure
 
-        save_figure(sensitivity_figure(axle.title, found), plot, force=force)
+        draw(plot, force, lambda: sensitivity_figure(axle.title, found))
     if as_json:
         print_json(sensitivity_document(axle, found))
         return
     print_remarks(axle.remarks)
     print_sensitivity(axle, found, top)
-    if plot is not None:
-        say(f"Picture: {plot}")

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from enum import StrEnum
 from pathlib import Path
 from tempfile import TemporaryDirectory
 from typing import Annotated
@@ -10,19 +9,12 @@ from typing import Annotated
 import typer
 
 from toewright_cli.console import print_json, print_remarks, say
-from toewright_cli.options import AsJson, Force, HardpointFile, Out, TravelList, parse_list, parse_number
+from toewright_cli.options import AsJson, Force, HardpointFile, OneSide, Out, TravelList, parse_list, parse_number
 from toewright_cli.outputs import check_out, save_results
 from toewright_cli.progress import notice_compilation, working
 from toewright_cli.toe import ToeDiameterOption, ToeUnitOption, workshop_scale
 
 SHEETS = (".html", ".pdf")
-
-
-class OneSide(StrEnum):
-    """One corner."""
-
-    LEFT = "left"
-    RIGHT = "right"
 
 
 def shims(

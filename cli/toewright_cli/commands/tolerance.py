@@ -2,22 +2,21 @@
 
 from __future__ import annotations
 
-from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
 import typer
 
 from toewright.views.toe import ToeUnit
-from toewright_cli.console import print_json, print_remarks, say, warn
+from toewright_cli.console import print_json, print_remarks, warn
 from toewright_cli.options import AsJson, Force, HardpointFile, Out, TravelList, parse_list, parse_number
 from toewright_cli.outputs import check_out, save_results
+from toewright_cli.pictures import Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
 from toewright_cli.toe import ToeDiameterOption, ToeUnitOption, toe_scale
 
 if TYPE_CHECKING:
     import xarray as xr
 
-PICTURES = (".png", ".svg", ".pdf")
 INTERRUPTED = 130
 
 
@@ -29,21 +28,19 @@ def tolerance(
     travel: TravelList = None,
     toe_unit: ToeUnitOption = None,
     toe_diameter: ToeDiameterOption = None,
-    plot: Annotated[
-        Path | None, typer.Option("--plot", metavar="FILE", help="Picture of the bands: .png, .svg or .pdf.")
-    ] = None,
+    plot: Plot = None,
     out_file: Out = None,
     force: Force = False,
     as_json: AsJson = False,
 ) -> None:
-    """Build the axle many times with the scatter that the file's tolerance table declares: bands of bump steer, yield of targets, who is to blame.
+    """Build the axle many times with the scatter that its file declares: bands of bump steer, yield of targets, who is to blame.
 
     Ctrl-C ends it early and shows what is done.
 
     Example: toewright tolerance hardpoints/marten_front.toml --builds 1000000 --plot bands.png
     """
     check_out(out_file, force)
-    check_out(plot, force, PICTURES, "--plot")
+    check_plot(plot, None, force)
     from toewright.model.errors import InputError
     from toewright.model.files import load
     from toewright.studies.tolerance import tolerance as solve
@@ -86,15 +83,12 @@ def tolerance(
         save_results(out_file, force, lambda: tolerance_table(found), lambda: tolerance_document(axle, found), dataset)
     if plot is not None:
         from toewright.views.plots_tolerance import tolerance_figure
-        from toewright.views.style import save_figure
 
-        save_figure(tolerance_figure(axle.title, found), plot, force=force)
+        draw(plot, force, lambda: tolerance_figure(axle.title, found))
     if as_json:
         print_json(tolerance_document(axle, found))
     else:
         print_remarks(axle.remarks)
         print_tolerance(axle, found, scale)
-        if plot is not None:
-            say(f"Picture: {plot}")
     if found.stopped:
         raise typer.Exit(INTERRUPTED)

@@ -136,7 +136,9 @@ def write_mp4(place: Path, frames: Sequence[Picture]) -> None:
     except (subprocess.CalledProcessError, BrokenPipeError) as error:
         if isinstance(error.__context__, KeyboardInterrupt):
             raise KeyboardInterrupt from error
-        raise InputError(f"{place.suffix}: ffmpeg could not write the film ({error}); write a .gif instead") from error
+        raise InputError(
+            "ffmpeg broke off while it wrote the .mp4; see that it runs and knows H.264, or write a .gif"
+        ) from error
 
 
 WRITERS: dict[str, Callable[[Path, Sequence[Picture]], None]] = {".gif": write_gif, ".mp4": write_mp4}
