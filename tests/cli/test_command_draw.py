@@ -143,6 +143,7 @@ def test_mp4_without_an_encoder_is_refused(cli: Cli, monkeypatch: pytest.MonkeyP
     )
 
 
+@linux
 def test_an_encoder_that_breaks_off_is_one_sentence(cli: Cli, monkeypatch: pytest.MonkeyPatch, tmp_path: Path) -> None:
     broken = tmp_path / "bin" / "ffmpeg"
     broken.parent.mkdir()
