@@ -84,6 +84,7 @@ def test_yield_against_the_normal_distribution():
     assert found.kept / found.builds == pytest.approx(expected, abs=2e-3)
     assert found.low < found.kept / found.builds < found.high
     assert found.nominal
+    assert found.band == pytest.approx(middle + scipy.stats.norm.ppf([0.05, 0.5, 0.95]) * sigma, abs=0.02 * sigma)
 
 
 def test_yield_interval_is_the_exact_binomial():

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+from toewright.model.glossary import quantity
 from toewright.views.words import axle_words, number, span_words, spread_indices
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import source_of
@@ -65,6 +66,7 @@ def tolerance_document(axle: Axle, found: Tolerance) -> dict[str, Any]:
                 "yield": y.kept / y.builds,
                 "yield_95_percent_interval": [y.low, y.high],
                 "drawn_keeps_it": y.nominal,
+                "worst_value_percent_5_50_95": y.band,
             }
             for y in found.yields
         ],
@@ -123,6 +125,9 @@ def print_tolerance(axle: Axle, found: Tolerance, scale: ToeScale) -> None:
             drawn = "" if y.nominal else "; MISSED AS DRAWN"
             share = f"{100 * y.kept / y.builds:.2f} % ({100 * y.low:.2f} to {100 * y.high:.2f} %)"
             say(f"- {share} of {y.builds:,} builds: {y.goal.words}{drawn}")
+            unit = quantity(y.goal.name).unit.replace("-", "")
+            five, half, most = (f"{value:+.4g}" for value in y.band)
+            say(f"    at the worst place of each build: {five} at 5 %, {half} at 50 %, {most} {unit} at 95 %".rstrip())
     else:
         say("The file has no [targets], so there is no yield.")
     if found.shares:

@@ -47,6 +47,7 @@ class Yield:
         low, high: limits of the yield (0 to 1) with CONFIDENCE, exact binomial (C. J. Clopper, E. S. Pearson, Biometrika 26
             (1934) 404-413).
         nominal: the car as drawn keeps it.
+        band: (3,) the figure at each build's worst place, at PERCENTILES of the builds that get there; NaN where none does.
     """
 
     goal: Goal
@@ -55,6 +56,7 @@ class Yield:
     low: float
     high: float
     nominal: bool
+    band: FloatArray
 
 
 @dataclass(frozen=True)
@@ -120,12 +122,16 @@ class Tolerance:
 
 @dataclass
 class _Store:
-    """What is kept of each build: bump steer (N, 2, T) in single precision, and how far each corner target is missed (N, G)."""
+    """What is kept of each build: bump steer (N, 2, T) and the worst value for each corner target (N, G), in single precision."""
 
     bump: np.ndarray[tuple[int, ...], np.dtype[np.float32]]
+    worst: np.ndarray[tuple[int, ...], np.dtype[np.float32]]
     kept: np.ndarray[tuple[int, ...], np.dtype[np.bool_]]
     done: int = 0
     ranges: list[tuple[int, int]] = field(default_factory=list)
+
+
+_Done = tuple[FloatArray, FloatArray, np.ndarray[tuple[int, ...], np.dtype[np.bool_]]]
 
 
 def _batched(goal: Goal) -> bool:
@@ -140,8 +146,8 @@ def _work(
     rack: float,
     travel: FloatArray,
     goals: Sequence[Goal],
-) -> tuple[FloatArray, np.ndarray[tuple[int, ...], np.dtype[np.bool_]]]:
-    """Bump steer (N, 2, T) and kept targets (N, G) of one chunk of builds."""
+) -> _Done:
+    """Bump steer (N, 2, T), worst values and kept targets (N, G) of one chunk of builds."""
     moves = np.empty(uniform.shape)
     for v, variable in enumerate(variables):
         moves[:, v] = displacement(variable, uniform[:, v])
@@ -151,17 +157,31 @@ def _work(
         [solve_batch(built[side], at, travel, columns=("bump_steer",), threads=1).values[:, 0, :, 0] for side in SIDES],
         axis=1,
     )
-    kept = np.ones((uniform.shape[0], len(goals)), dtype=bool)
+    worst = np.empty((uniform.shape[0], len(goals)))
+    kept = np.empty(worst.shape, dtype=bool)
     for g, goal in enumerate(goals):
-        for side in goal_sides(goal):
-            racks = np.array(goal.at_rack or (0.0,))
-            values = solve_batch(built[side], racks, travel_positions(goal), columns=(goal.name,), threads=1).values[
-                ..., 0
-            ]
-            slack = SLACK * max(1.0, *(abs(x) for x in (goal.low, goal.high) if np.isfinite(x)))
-            inside = (values >= goal.low - slack) & (values <= goal.high + slack)
-            kept[:, g] &= inside.reshape(len(values), -1).all(axis=1)
-    return bump, kept
+        racks = np.array(goal.at_rack or (0.0,))
+        values = np.concatenate(
+            [
+                solve_batch(built[side], racks, travel_positions(goal), columns=(goal.name,), threads=1).values.reshape(
+                    uniform.shape[0], -1
+                )
+                for side in goal_sides(goal)
+            ],
+            axis=1,
+        )
+        worst[:, g], kept[:, g] = _worst(goal, values)
+    return bump, worst, kept
+
+
+def _worst(goal: Goal, values: FloatArray) -> tuple[FloatArray, np.ndarray[tuple[int, ...], np.dtype[np.bool_]]]:
+    """The value (N,) farthest beyond, or nearest to, a goal's limit among values (N, K), and whether all keep it; NaN is a miss."""
+    miss = np.maximum(goal.low - values, values - goal.high)
+    lost = np.isnan(values).any(axis=1)
+    pick = np.argmax(np.where(np.isnan(miss), -np.inf, miss), axis=1)
+    rows = np.arange(len(values))
+    slack = SLACK * max(1.0, *(abs(x) for x in (goal.low, goal.high) if np.isfinite(x)))
+    return np.where(lost, np.nan, values[rows, pick]), ~lost & (miss[rows, pick] <= slack)
 
 
 def tolerance(
@@ -198,19 +218,20 @@ def tolerance(
     at = check_positions(travel, default_travel(axle), "travel")
     goals = [goal for goal in targets if _batched(goal)]
     nominal = {side: design_vector(axle, side) for side in SIDES}
-    store = _Store(np.empty((builds, 2, at.size), dtype=np.float32), np.empty((builds, len(goals)), dtype=bool))
+    store = _Store(
+        np.empty((builds, 2, at.size), dtype=np.float32),
+        np.empty((builds, len(goals)), dtype=np.float32),
+        np.empty((builds, len(goals)), dtype=bool),
+    )
     sampler = qmc.Sobol(len(variables), seed=seed)
     workers = os.cpu_count() or 1
-    waiting: deque[tuple[int, int, Future[tuple[FloatArray, np.ndarray[tuple[int, ...], np.dtype[np.bool_]]]]]] = (
-        deque()
-    )
+    waiting: deque[tuple[int, int, Future[_Done]]] = deque()
     pool = ThreadPoolExecutor(workers)
 
     def collect() -> None:
         first, last, future = waiting[0]
-        bump, kept = future.result()
+        store.bump[first:last], store.worst[first:last], store.kept[first:last] = future.result()
         waiting.popleft()
-        store.bump[first:last], store.kept[first:last] = bump, kept
         store.done = last
         if progress is not None:
             progress(last - first)
@@ -275,7 +296,9 @@ def _summarise(
         between = np.array(list(pool.map(lambda t: _spread(bump[:, 0, t] - bump[:, 1, t]), range(travel.size))))
         worst = np.array(list(pool.map(lambda s: _spread(np.abs(bump[:, s]).max(axis=1)), range(2))))
     size = travel.size
-    yields = [_yield(axle, goal, int(store.kept[: store.done, g].sum()), store.done) for g, goal in enumerate(goals)]
+    yields = [
+        _yield(axle, goal, store.kept[: store.done, g], store.worst[: store.done, g]) for g, goal in enumerate(goals)
+    ]
     others = [goal for goal in targets if not _batched(goal)]
     yields += _whole_axle_yields(axle, variables, others, seed)
     return Tolerance(
@@ -305,9 +328,18 @@ def binomial_interval(kept: int, builds: int) -> tuple[float, float]:
     return float(found.low), float(found.high)
 
 
-def _yield(axle: Axle, goal: Goal, kept: int, builds: int) -> Yield:
-    low, high = binomial_interval(kept, builds)
-    return Yield(goal, kept, builds, low, high, judge(goal, measure(axle, goal)).passed)
+def _yield(
+    axle: Axle,
+    goal: Goal,
+    kept: np.ndarray[tuple[int, ...], np.dtype[np.bool_]],
+    worst: np.ndarray[tuple[int, ...], np.dtype[np.float32]],
+) -> Yield:
+    """Yield of a goal from kept and worst values, (N,) each."""
+    count = int(kept.sum())
+    low, high = binomial_interval(count, kept.size)
+    there = worst[~np.isnan(worst)]
+    band = np.percentile(there, PERCENTILES).astype(float) if there.size else np.full(3, np.nan)
+    return Yield(goal, count, kept.size, low, high, judge(goal, measure(axle, goal)).passed, band)
 
 
 def _whole_axle_yields(axle: Axle, variables: tuple[Variable, ...], goals: Sequence[Goal], seed: int) -> list[Yield]:
@@ -320,7 +352,8 @@ def _whole_axle_yields(axle: Axle, variables: tuple[Variable, ...], goals: Seque
     moves = np.stack([displacement(variable, uniform[:, v]) for v, variable in enumerate(variables)], axis=1)
     nominal = {side: design_vector(axle, side) for side in SIDES}
     built = built_designs(nominal, variables, moves)
-    kept = np.zeros(len(goals), dtype=int)
+    kept = np.zeros((WHOLE_AXLE_BUILDS, len(goals)), dtype=bool)
+    worst = np.full(kept.shape, np.nan, dtype=np.float32)
     for n in range(WHOLE_AXLE_BUILDS):
         corners = []
         for side in SIDES:
@@ -331,10 +364,11 @@ def _whole_axle_yields(axle: Axle, variables: tuple[Variable, ...], goals: Seque
         car = replace(axle, left=corners[0], right=corners[1], symmetric=False)
         for g, goal in enumerate(goals):
             try:
-                kept[g] += judge(goal, measure(car, goal)).passed
+                verdict = judge(goal, measure(car, goal))
+                kept[n, g], worst[n, g] = verdict.passed, verdict.value
             except InputError:
                 continue  # a build that does not steer so far does not keep the target
-    return [_yield(axle, goal, int(kept[g]), WHOLE_AXLE_BUILDS) for g, goal in enumerate(goals)]
+    return [_yield(axle, goal, kept[:, g], worst[:, g]) for g, goal in enumerate(goals)]
 
 
 def sobol_shares(
