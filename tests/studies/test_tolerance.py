@@ -13,7 +13,8 @@ import toewright as tw
 from toewright.kinematics.design import coordinate_index
 from toewright.model.errors import InputError
 from toewright.studies.scatter import built_designs, displacement, frozen, read_scatter
-from toewright.studies.tolerance import binomial_interval, sobol_shares, tolerance
+from toewright.studies.shares import sobol_shares
+from toewright.studies.tolerance import binomial_interval, tolerance
 
 FRONT = tw.load(HARDPOINTS / "marten_front.toml")
 TRAVEL = [-20.0, 0.0, 20.0]
