@@ -63,7 +63,7 @@ def _draw_steer(axes: Axes, turns: Sequence[TurnMaps], labels: Sequence[str]) ->
     axes.set_title(
         "Steer angles" if single else "Steer angles: left wheel; dashed right wheel; dotted ideal inner wheel"
     )
-    axes.legend(loc="upper left")
+    axes.legend(loc="best")
 
 
 def _branches(axle: Axle, turned: TurnMaps) -> list[tuple[str, str, np.ndarray[Any, Any]]]:
