@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
+from toewright_cli.progress import COMPILE_NOTICE
+
 
 @dataclass(frozen=True)
 class Result:
@@ -14,12 +16,12 @@ class Result:
 
     @property
     def complaint(self) -> str:
-        """The one line that a refusal prints."""
+        """The one line that a refusal prints; notices of long work (compiling, progress) may stand before it."""
         assert self.out == ""
-        lines = self.err.splitlines()
+        assert "Traceback" not in self.err
+        lines = [line for line in self.err.splitlines() if line != COMPILE_NOTICE and not line.endswith(" ...")]
         assert len(lines) == 1, lines
         assert lines[0].startswith("toewright: ")
-        assert "Traceback" not in self.err
         return lines[0]
 
 
