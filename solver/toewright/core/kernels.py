@@ -550,7 +550,7 @@ def _inverse_det(P, q, lane, det):
 
 @compiled
 def _pack_block(designs, first, contact, B):
-    """Pack LANES designs from ``first`` on into a block, at their design pose; the last design fills what is left."""
+    """Pack LANES designs from ``first`` on into a block, at their design pose with its tangent along the rack; the last one fills up."""
     one, real = np.empty(PACKED), np.empty(PACKED)
     for lane in range(LANES):
         pack(designs[min(first + lane, designs.shape[0] - 1)], one)
@@ -695,7 +695,6 @@ def _block_grid(
             starts[n, k] = math.nan
     size = (GRIP + 1 - X) * LANES
     origin, state = np.empty(size), np.empty(size)
-    _correct(B, 0.0, 0.0, contact, 1.0)
     _copy(B, X * LANES, origin, 0, size)
     for lane in range(LANES):
         if math.isnan(B[INVERSE_DET * LANES + lane]):

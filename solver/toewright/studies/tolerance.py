@@ -99,7 +99,7 @@ class Tolerance:
 
 @dataclass
 class _Store:
-    """What is kept of each build: bump steer (N, 2, T) and the worst value for each corner target (N, G), in single precision."""
+    """What is kept of each build: bump steer (2, T, N), and the worst value for each corner target (N, G), in single precision."""
 
     bump: np.ndarray[tuple[int, ...], np.dtype[np.float32]]
     worst: np.ndarray[tuple[int, ...], np.dtype[np.float32]]
@@ -124,15 +124,17 @@ def _work(
     travel: FloatArray,
     goals: Sequence[Goal],
 ) -> _Done:
-    """Bump steer (N, 2, T), worst values and kept targets (N, G) of one chunk of builds."""
+    """Bump steer (2, T, N), worst values and kept targets (N, G) of one chunk of builds."""
     moves = np.empty(uniform.shape)
     for v, variable in enumerate(variables):
         moves[:, v] = displacement(variable, uniform[:, v])
     built = built_designs(nominal, variables, moves)
     at = np.array([rack])
     bump = np.stack(
-        [solve_batch(built[side], at, travel, columns=("bump_steer",), threads=1).values[:, 0, :, 0] for side in SIDES],
-        axis=1,
+        [
+            solve_batch(built[side], at, travel, columns=("bump_steer",), threads=1).values[:, 0, :, 0].T
+            for side in SIDES
+        ]
     )
     worst = np.empty((uniform.shape[0], len(goals)))
     kept = np.empty(worst.shape, dtype=bool)
@@ -196,7 +198,7 @@ def tolerance(
     goals = [goal for goal in targets if _batched(goal)]
     nominal = {side: design_vector(axle, side) for side in SIDES}
     store = _Store(
-        np.empty((builds, 2, at.size), dtype=np.float32),
+        np.empty((2, at.size, builds), dtype=np.float32),
         np.empty((builds, len(goals)), dtype=np.float32),
         np.empty((builds, len(goals)), dtype=bool),
     )
@@ -207,7 +209,7 @@ def tolerance(
 
     def collect() -> None:
         first, last, future = waiting[0]
-        store.bump[first:last], store.worst[first:last], store.kept[first:last] = future.result()
+        store.bump[:, :, first:last], store.worst[first:last], store.kept[first:last] = future.result()
         waiting.popleft()
         store.done = last
         if progress is not None:
@@ -242,8 +244,7 @@ def _draw(sampler: object, count: int) -> FloatArray:
 
 def _spread(values: np.ndarray[tuple[int, ...], np.dtype[np.float32]]) -> FloatArray:
     """PERCENTILES and the standard deviation, (4,), of values (N,)."""
-    whole = np.ascontiguousarray(values, dtype=float)
-    return np.append(np.percentile(whole, PERCENTILES), whole.std())
+    return np.append(np.percentile(values, PERCENTILES), values.std(dtype=float)).astype(float)
 
 
 def _summarise(
@@ -257,10 +258,10 @@ def _summarise(
     rack: float,
     travel: FloatArray,
 ) -> Tolerance:
-    bump = store.bump[: store.done]
-    good = ~np.isnan(bump.reshape(store.done, -1)).any(axis=1)
+    bump = store.bump[:, :, : store.done]
+    good = ~np.isnan(bump).any(axis=(0, 1))
     if not good.all():
-        bump = bump[good]
+        bump = bump[:, :, good]
     if bump.size == 0:
         raise InputError(
             f"{axle.path or axle.title}: no build reaches all of the travel; ask for less, or tighten the tolerances"
@@ -268,10 +269,10 @@ def _summarise(
     designs = np.array([design_vector(axle, side) for side in SIDES])
     drawn = solve_batch(designs, np.array([rack]), travel, columns=("bump_steer",)).values[:, 0, :, 0]
     with ThreadPoolExecutor(os.cpu_count() or 1) as pool:
-        jobs = [bump[:, s, t] for s in range(2) for t in range(travel.size)]
+        jobs = [bump[s, t] for s in range(2) for t in range(travel.size)]
         found = np.array(list(pool.map(_spread, jobs)))
-        between = np.array(list(pool.map(lambda t: _spread(bump[:, 0, t] - bump[:, 1, t]), range(travel.size))))
-        worst = np.array(list(pool.map(lambda s: _spread(np.abs(bump[:, s]).max(axis=1)), range(2))))
+        between = np.array(list(pool.map(lambda t: _spread(bump[0, t] - bump[1, t]), range(travel.size))))
+        worst = np.array(list(pool.map(lambda s: _spread(np.abs(bump[s]).max(axis=0)), range(2))))
     size = travel.size
     yields = [
         _yield(axle, goal, store.kept[: store.done, g], store.worst[: store.done, g]) for g, goal in enumerate(goals)
