@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from corners import make_axle, scatter
+from corners import HARDPOINTS, SAMPLES, make_axle, scatter
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from second_opinion import PointModel
@@ -92,14 +92,70 @@ def test_lock_is_found_and_named():
     assert min(edge["transmission_angle"][0, 1, 0], 180.0 - edge["transmission_angle"][0, 1, 0]) < 3.0
 
 
+def in_line_angle(axle, stop):
+    """How far (deg) tie rod and arm are from being in line at a stop, seen along the steering axis.
+
+    From three poses short of it, as towards a fold everything goes by a root; signed there, as the rod may swing past the arm.
+    """
+    for short in (1e-4, 1e-3, 1e-2, 0.03, 0.1, 0.3):
+        away = -np.sign(stop.requested) * short * np.array([1.0, 4.0, 9.0])
+        order = np.argsort(away)
+        grid = [[stop.rack_travel], [stop.wheel_travel]]
+        grid[stop.along == "wheel_travel"] = getattr(stop, stop.along) + away[order]
+        maps = tw.sweep(axle, *grid, sides=[stop.side])
+        if np.any(maps.status != layout.OK):
+            continue
+        joints = {name: places.reshape(-1, 3)[np.argsort(order)] for name, places in maps.joints[0].items()}
+        k = maps["steering_axis"].reshape(-1, 3)[np.argsort(order)]
+        rod, arm = (
+            joints["tie_rod_inner"] - joints["tie_rod_outer"],
+            joints["lower_ball_joint"] - joints["tie_rod_outer"],
+        )
+        sine = np.sum(k * np.cross(rod, arm), axis=1)
+        cosine = np.sum(rod * arm, axis=1) - np.sum(rod * k, axis=1) * np.sum(arm * k, axis=1)
+        angle = np.degrees(np.unwrap(np.arctan2(sine, cosine))) @ [3.0, -3.0, 1.0]
+        return abs((angle + 90.0) % 180.0 - 90.0)
+    raise AssertionError(f"no pose within 2.7 mm of {stop.place}")
+
+
+def all_stops(axle, side):
+    """Stops far beyond any use: of the rack at zero travel, of travel straight ahead and of travel at a turned rack."""
+    rack = [0.0] if axle.rack is None else np.linspace(-180.0, 180.0, 61)
+    turned = [0.0] if axle.rack is None else [20.0]
+    far = np.linspace(-500.0, 500.0, 101)
+    grids = ((rack, [0.0]), ([0.0], far), (turned, far))
+    return [stop for at in grids for stop in tw.sweep(axle, *at, sides=[side]).stops]
+
+
+@pytest.mark.parametrize("kind", ["double-wishbone", "strut", "samples"])
+def test_a_stop_is_called_locked_exactly_where_rod_and_arm_are_in_line(kind):
+    scattered = [make_axle(scatter(kind, 12.0, seed), kind) for seed in range(24)] if kind != "samples" else []
+    names = []
+    for axle in scattered or [tw.load(path) for path in SAMPLES]:
+        for side in ("left",) if scattered else ("left", "right"):
+            for stop in all_stops(axle, side):
+                off = in_line_angle(axle, stop)
+                if abs(off - layout.LOCK_MARGIN) > 1.0:  # nearer to the border three poses are not exact enough
+                    assert stop.status == ("locked" if off < layout.LOCK_MARGIN else "out-of-reach"), (stop, off)
+                    assert ("come into line" in stop.cause) == (off < layout.LOCK_MARGIN)
+                names.append((stop.along, stop.status))
+    assert names.count(("wheel_travel", "out-of-reach")) > 8
+    assert names.count(("rack_travel", "locked")) > 8
+
+
 def test_end_of_travel_is_out_of_reach():
-    # a long steering arm and short upper arm: the wishbones run out while the tie rod still has its lever
-    points = scatter("double-wishbone", 0.0, 0)
-    points["upper_pivot_front"] = np.array([118.0, 432.0, 291.0])
-    points["upper_pivot_rear"] = np.array([-126.0, 438.0, 283.0])
-    maps = tw.sweep(make_axle(points), [0.0], np.linspace(-200.0, 200.0, 81), sides=["left"])
-    assert "out-of-reach" in set(maps.status_names.ravel())
-    assert any("stretched out" in stop.sentence for stop in maps.stops)
+    # the arms of the sample stretch out over 250 mm down and 312 mm up, where rod and arm stand nearly square
+    maps = tw.sweep(tw.load(HARDPOINTS / "marten_front.toml"), [0.0], np.linspace(-330.0, 330.0, 221), sides=["left"])
+    assert set(maps.status_names.ravel()) == {"ok", "out-of-reach"}
+    assert {stop.status for stop in maps.stops} == {"out-of-reach"}
+    assert len(maps.stops) == 2
+    ends = [stop.wheel_travel for stop in maps.stops]
+    assert 310.0 < max(ends) < 315.0
+    assert -255.0 < min(ends) < -250.0
+    assert all("end of their reach" in stop.sentence for stop in maps.stops)
+    reached = maps["transmission_angle"][0, 0][maps.status[0, 0] == layout.OK]
+    assert 70.0 < reached[0] < 110.0
+    assert 85.0 < reached[-1] < 95.0
 
 
 def test_beyond_a_lock_the_other_path_is_tried():

@@ -81,10 +81,8 @@ WALK_STEP_TOLERANCE = 1e-11  # the last Newton move at a walked pose
 WALK_STRIDE = 0.06  # longest stride
 WALK_SHORTEST = 1e-8  # a shorter stride than this (1e-6 mm) means the path ends here
 NO_GRIP = 1e-9  # rows (scaled to unit gradients) with a smaller determinant at design are dependent: locked where drawn
-LOCKED_GRIP = 1e-3  # below this share of the design determinant the pose counts as locked: its rates mean nothing
-TIE_ROD_SHARE = (
-    0.2  # of the largest link force where a path ends: above it the steering locks, below it the arms run out
-)
+LEAST_GRIP = 1e-3  # below this share of the design determinant the path counts as ended: rates there mean nothing
+LOCKED_SINE = math.sin(math.radians(_layout.LOCK_MARGIN))
 
 TO_DEG = 180.0 / math.pi
 
@@ -1088,33 +1086,25 @@ def _begin(designs, n, contact, P, x, at, a):
 
 
 @compiled
-def _why(P, x, at, contact, a):
-    """LOCKED where the force of the tie rod takes part in the state of stress that lets the linkage go, else OUT_OF_REACH.
+def _why(P, x, at, contact):
+    """Status of a path that ends at pose x: LOCKED where rod and arm are in line as seen along the steering axis, else OUT_OF_REACH.
 
-    At the end of a path the rows are dependent: some forces in the links hold each other without any load. With a
-    share of the tie rod's force the steering is at its toggle; without it the arms are stretched out.
+    In line: the transmission angle is within LOCK_MARGIN of 0 or 180 deg, or there is no lever at all. A linkage whose rows
+    are dependent where it was drawn is LOCKED: it cannot move in any direction.
     """
-    _system(P, x, at[0], at[1], contact, a)
     if math.isnan(P[INVERSE_DET]):
         return STATUS_LOCKED
-    t = np.zeros((5, 8))
-    for i in range(5):
-        for j in range(5):
-            t[i, j] = a[j, i]
-        t[i, 5] = 1.0 / (1.0 if i < 2 else P[LEVER])
-    _eliminate(t)
-    largest = 0.0
-    for i in range(5):
-        largest = max(largest, abs(t[i, 5]) / P[ROW_SCALE + i])
-    tie = abs(t[4, 5]) / P[ROW_SCALE + 4]
-    return STATUS_LOCKED if tie >= TIE_ROD_SHARE * largest else STATUS_OUT_OF_REACH
+    r = _rotation(x[2], x[3], x[4])
+    pz, _, _, ax, ay, az = _drive(P, 1, 0, r, at[1], contact)
+    m = _measure(P, 1, 0, r, at[0], x[0], x[1], pz, ax, ay, az)
+    return STATUS_LOCKED if m[14] <= LOCKED_SINE * math.hypot(m[14], m[15]) else STATUS_OUT_OF_REACH
 
 
 @compiled
 def _finish(P, x, at, contact, a, pose):
     """Status of a pose that was walked to; it is written to pose (6,) when it is ok."""
-    if at[2] < LOCKED_GRIP:
-        return STATUS_LOCKED
+    if at[2] < LEAST_GRIP:
+        return _why(P, x, at, contact)
     _system(P, x, at[0], at[1], contact, a)
     for k in range(6):
         pose[k] = x[k]
@@ -1167,7 +1157,7 @@ def walk_poses(designs, rack, travel, contact, poses, status, iterations, ends):
                 if reached:
                     reached, more = _leg(P, x, at, 1.0 - along, t if order == 0 else r, contact, a, trial)
                     count += more
-                result = _finish(P, x, at, contact, a, poses[n, m]) if reached else _why(P, x, at, contact, a)
+                result = _finish(P, x, at, contact, a, poses[n, m]) if reached else _why(P, x, at, contact)
                 if order == 0 or result == STATUS_OK:
                     status[n, m] = result
                     iterations[n, m] = count
@@ -1196,7 +1186,7 @@ def _walk_line(
         if reached:
             reached, count = _leg(P, x, at, along_rack, values[i], contact, a, trial)
             if not reached:
-                result = _why(P, x, at, contact, a)
+                result = _why(P, x, at, contact)
         if not reached and first < 0.5:
             break
         node = offset + keep[i] * spread
@@ -1243,7 +1233,7 @@ def walk_grid(
         for i in range(R):
             row_status[i] = STATUS_OUT_OF_REACH
             if rack[i] == 0.0:
-                row_status[i] = STATUS_LOCKED if at[2] < LOCKED_GRIP else STATUS_OK
+                row_status[i] = STATUS_LOCKED if at[2] < LEAST_GRIP else STATUS_OK
                 row_ends[i, 0], row_ends[i, 1] = 0.0, 0.0
             for k in range(6):
                 row_poses[i, k] = 0.0

@@ -114,6 +114,10 @@ OK: Final = 0
 OUT_OF_REACH: Final = 1
 LOCKED: Final = 2
 
+LOCK_MARGIN: Final = 15.0
+"""Where the linkage can go no further, tie rod and steering arm count as in line when the transmission angle is within this
+(deg) of 0 or 180. Stops of the rack lie within 2 deg; stops of the wheel travel lie anywhere, so the border is a convention."""
+
 OBJECTIVE_TERMS: Final = ("steer_angle", "camber", "contact_x", "contact_y", "contact_z")
 """What one objective may weigh per pose in the contracted derivative."""
 

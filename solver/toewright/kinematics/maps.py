@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from toewright.core.types import FloatArray, IntArray, StatusArray
-from toewright.kinematics.status import STATUS_NAMES
+from toewright.kinematics.status import STATUS_NAMES, STOP_CAUSES
 from toewright.model.glossary import GLOSSARY
 
 if TYPE_CHECKING:
@@ -78,9 +78,7 @@ class Stop:
     @property
     def cause(self) -> str:
         """Why, in words."""
-        if self.status == "locked":
-            return "the tie rod and the steering arm come into line and the steering locks"
-        return "the arms are stretched out and the wheel cannot go farther"
+        return STOP_CAUSES[self.status]
 
     @property
     def place(self) -> str:

@@ -39,7 +39,9 @@ _XYZ = "x forward, y left, z up"
 
 _MOTION: tuple[_Row, ...] = (
     ("side", "", "-", "side", "", "left or right; s = +1 left, -1 right in formulas"),
-    ("status", "", "-", "status", "", "ok; out-of-reach: the links do not reach; locked: the linkage stands at a toggle"),
+    ("status", "", "-", "status", "",
+     "ok; locked: at or beyond a stop where tie rod and steering arm are in line (transmission angle within 15 deg of 0 or 180); "
+     "out-of-reach: at or beyond any other stop of the links"),
     ("rack_travel", "", "mm", "rack travel", "along the rack axis +",
      "displacement of the rack along its axis from the design position; the axis points to the left unless rack.axis says otherwise"),
     ("wheel_travel", "", "mm", "wheel travel", "bump +, rebound -",
