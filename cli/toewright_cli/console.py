@@ -10,9 +10,14 @@ from collections.abc import Mapping, Sequence
 from typing import Any, TextIO
 
 from rich import box
+from rich.cells import cell_len
 from rich.console import Console
+from rich.measure import Measurement
 from rich.table import Table
 from rich.text import Text
+
+WIDEST = 1000
+"""Columns that no table takes."""
 
 PIPED_WIDTH = 100
 """Columns when the output is no terminal and COLUMNS is not set."""
@@ -62,8 +67,13 @@ def table(columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequ
     """
     made = Table(box=box.SIMPLE_HEAD, header_style="bold", padding=(0, 1, 0, 0))
     for number, name in enumerate(columns):
+        numeric = number in right
         made.add_column(
-            Text(name), justify="right" if number in right else "left", vertical="top", no_wrap=number in right
+            Text(name),
+            justify="right" if numeric else "left",
+            vertical="top",
+            no_wrap=numeric,
+            min_width=_width([name, *(row[number] for row in rows if row)]) if numeric else None,
         )
     for row in rows:
         if row:
@@ -73,17 +83,48 @@ def table(columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequ
     return made
 
 
-def print_table(columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequence[int] = ()) -> None:
-    """Print ``table`` to stdout without spaces at the ends of lines."""
+def _width(cells: Sequence[Cell]) -> int:
+    """Columns that the longest line of some cells takes."""
+    return max(cell_len(line) for cell in cells for line in str(cell).split("\n"))
+
+
+def _least(console: Console, made: Table) -> int:
+    """Columns that a table takes at least."""
+    return Measurement.get(console, console.options.update(max_width=WIDEST), made).minimum
+
+
+def print_table(
+    columns: Sequence[str], rows: Sequence[Sequence[Cell]], *, right: Sequence[int] = (), spare: Sequence[int] = ()
+) -> None:
+    """Print ``table`` to stdout without spaces at the ends of lines; a number is never cut short.
+
+    Where the table is too wide, columns of ``spare`` are left out, the first one first, and a line says which; where it still is, its
+    lines are longer than the terminal is wide.
+    """
     console = out()
+    made = table(columns, rows, right=right)
+    kept, dropped = list(range(len(columns))), list[str]()
+    for number in spare:
+        if _least(console, made) <= console.width:
+            break
+        kept.remove(number)
+        dropped.append(" ".join(columns[number].split()))
+        made = table(
+            [columns[k] for k in kept],
+            [[row[k] for k in kept] if row else [] for row in rows],
+            right=[place for place, k in enumerate(kept) if k in right],
+        )
+    console.width = max(console.width, _least(console, made))
     with console.capture() as captured:
-        console.print(table(columns, rows, right=right))
+        console.print(made)
     lines = [line.rstrip() for line in captured.get().splitlines()]
     while lines and not lines[0]:
         lines.pop(0)
     while lines and not lines[-1]:
         lines.pop()
     sys.stdout.write("\n".join(lines) + "\n")
+    if dropped:
+        say(f"Left out to fit the width: {', '.join(dropped)}; a wider terminal or --out shows all.")
 
 
 def print_json(value: Any) -> None:

@@ -11,6 +11,8 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
     from toewright.model.axle import Axle
 
 LIST_HELP = "lo:hi:n (n values from lo to hi) or values separated by commas, ascending"
@@ -144,6 +146,24 @@ def parse_number(value: float | None, option: str) -> float | None:
         InputError: if it is not finite or out of all proportion.
     """
     return None if value is None else _number(repr(value), option, f"{value:g}")
+
+
+STEEPEST_ROLL = 45.0
+"""Roll angles (deg) of this size and more are refused."""
+
+
+def check_roll(values: Sequence[float], text: str) -> None:
+    """Refuse a ``--roll`` that no car has on its wheels.
+
+    Raises:
+        InputError: if an angle is that steep.
+    """
+    from toewright.model.errors import InputError
+
+    if max(map(abs, values)) >= STEEPEST_ROLL:
+        raise InputError(
+            f"--roll {text}: angles of {STEEPEST_ROLL:g} deg and more are no roll of a car on its wheels; ask for less"
+        )
 
 
 def parse_rack(text: str | None, axle: Axle) -> list[float] | None:

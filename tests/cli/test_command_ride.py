@@ -44,6 +44,26 @@ def test_one_motion_only(cli: Cli) -> None:
     assert "Bump:" not in out
 
 
+def test_the_legend_explains_what_is_shown_and_no_more(cli: Cli) -> None:
+    roll = cli("ride", FRONT, "--motion", "roll").out
+    assert "roll: right side down +" in roll
+    for words in ("Braking", "anti-dive", "swing arm", "recession", "track change"):
+        assert words not in roll
+    bump = cli("ride", FRONT, "--motion", "bump").out
+    for words in ("Braking: 62 %", "anti-dive: braking lifts the nose +", "swing arm: instant", "recession rearward +"):
+        assert words in bump
+    assert "right side down" not in bump
+
+
+def test_both_ends_of_what_is_not_reached_are_named(cli: Cli) -> None:
+    out = cli("ride", FRONT, "--motion", "bump", "--travel=-300:350:14").out
+    assert (
+        "Not reached: from +350.0 mm of bump up (out-of-reach) and from -300.0 mm of bump down (out-of-reach)." in out
+    )
+    one = cli("ride", FRONT, "--motion", "bump", "--travel=-300:100:9").out
+    assert "Not reached: from -300.0 mm of bump down (out-of-reach)." in one
+
+
 def test_toe_is_in_the_unit_asked_for(cli: Cli) -> None:
     out = cli("ride", FRONT, "--motion", "bump", "--toe-unit", "mm").out
     assert "mm per wheel across the 254 mm rim" in out

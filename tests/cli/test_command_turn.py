@@ -51,6 +51,39 @@ def test_the_definition_is_printed(cli: Cli, definition: str) -> None:
     )
 
 
+def test_a_missing_other_axle_is_named_with_its_key(cli: Cli, tmp_path: Path) -> None:
+    file = tmp_path / "front.toml"
+    file.write_text(FRONT.read_text())
+    result = cli("turn", file)
+    assert result.code == 2
+    for words in (str(file), "vehicle.other_axle", "there is no file", "marten_rear.toml", "leave it out"):
+        assert words in result.err
+    (tmp_path / "marten_rear.toml").write_text("schema = 1\ntitle =")
+    result = cli("turn", file)
+    assert result.code == 2
+    for words in (str(file), "vehicle.other_axle", "marten_rear.toml", "TOML"):
+        assert words in result.complaint
+
+
+def test_a_roll_that_no_car_has_is_refused(cli: Cli) -> None:
+    for command in ("turn", "ride"):
+        result = cli(command, FRONT, "--roll", "60")
+        assert result.code == 2
+        assert "--roll 60: angles of 45 deg and more" in result.complaint
+
+
+def test_sentences_and_rows_at_the_border_of_what_is_shown(cli: Cli) -> None:
+    van = HARDPOINTS / "linnet_front.toml"
+    out = cli("turn", van).out
+    assert "at mean steer 3.0 to 6.0 deg, the inner more elsewhere" in out
+    row = next(line for line in out.splitlines() if line.split()[:1] == ["-7.2"])
+    assert row.split()[4] == "+3.00"  # 2.9999 deg reads as 3: its figures are there
+    assert "-" not in row.split()
+    out = cli("turn", van, "--rack=-72,-43.2,-14.4,0").out
+    assert "at mean steer 6.0 deg, the inner more elsewhere" in out
+    assert "hand wheel: to the left +" in out
+
+
 def test_csv_has_the_columns_and_full_precision(cli: Cli, tmp_path: Path) -> None:
     target = tmp_path / "turn.csv"
     assert cli("turn", FRONT, "--rack", "-80,-10,0,10", "--out", target).code == 0

@@ -244,6 +244,32 @@ def test_columns_agree_with_the_sweep():
     assert turned["hand_wheel_angle"] == pytest.approx(360.0 * rack / 52.0)
 
 
+@pytest.mark.parametrize("sample", ["marten_front", "linnet_front", "ibex_front"])
+def test_the_hand_wheel_turns_left_for_a_left_turn(sample):
+    axle = tw.load(HARDPOINTS / f"{sample}.toml")
+    stroke = axle.rack.stroke
+    turned = tw.turn(axle, np.linspace(-stroke, stroke, 9))
+    assert np.abs(turned["hand_wheel_angle"]) == pytest.approx(
+        360.0 * np.abs(turned.rack_travel) / axle.rack.travel_per_turn
+    )
+    off = np.abs(turned["mean_steer"]) > 1.0
+    assert off.sum() == 8
+    assert np.all(np.sign(turned["hand_wheel_angle"][off]) == np.sign(turned["mean_steer"][off]))
+    assert np.all(turned["steering_ratio"] > 0.0)
+    behind = axle.left.points["tie_rod_outer"][0] < axle.left.points["wheel_centre"][0]
+    assert (turned["hand_wheel_angle"][0] > 0.0) == behind == (sample == "linnet_front")
+
+
+def test_straight_ahead_does_not_hang_on_rounding():
+    contact = np.array([[[0.0, 600.0]] * 3, [[0.0, -600.0]] * 3])
+    steer = np.array([[-0.1 - 1e-15, -0.1, -0.1 + 1e-15], [0.1, 0.1, 0.1]])
+    for front in (True, False):
+        found = ackermann_geometry(steer, contact, -1500.0 if front else 1500.0, front=front)
+        assert np.ptp(found.error) < 1e-12
+        assert np.ptp(found.inner) < 1e-12
+        assert found.inner[1] == (-0.1 if front else 0.1)  # as in a turn to the left
+
+
 def test_other_axle_enters():
     front = tw.load(HARDPOINTS / "marten_front.toml")
     alone = replace(front, vehicle=replace(front.vehicle, other_axle=None))

@@ -17,6 +17,7 @@ from toewright_cli.options import (
     OneSide,
     Out,
     TravelList,
+    check_roll,
     parse_list,
     parse_number,
 )
@@ -73,8 +74,8 @@ def ride(
     from toewright_cli.show.tables import long_table, table_document
 
     at_travel, at_roll = parse_list(travel, "--travel"), parse_list(roll, "--roll")
-    if at_roll is not None and max(map(abs, at_roll)) >= 45.0:
-        raise InputError(f"--roll {roll}: angles of 45 deg and more are no roll of a car on its wheels; ask for less")
+    if at_roll is not None:
+        check_roll(at_roll, str(roll))
     axle = load(file)
     at_rack = parse_number(rack, "--rack") or 0.0
     for of in (axle, *overlaid):

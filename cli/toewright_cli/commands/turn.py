@@ -8,7 +8,17 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from toewright_cli.console import print_definitions, print_json, print_remarks
-from toewright_cli.options import AsJson, Explain, Force, HardpointFile, Out, RackList, parse_number, parse_rack
+from toewright_cli.options import (
+    AsJson,
+    Explain,
+    Force,
+    HardpointFile,
+    Out,
+    RackList,
+    check_roll,
+    parse_number,
+    parse_rack,
+)
 from toewright_cli.outputs import check_out, save_results
 from toewright_cli.pictures import FINE, Overlay, Plot, check_plot, draw
 from toewright_cli.progress import notice_compilation, working
@@ -72,6 +82,8 @@ def turn(
     at_rack = parse_rack(rack, axle)
     height = parse_number(travel, "--travel")
     angle = parse_number(roll, "--roll")
+    if angle is not None:
+        check_roll([angle], f"{angle:g}")
     ratio = parse_number(other_rack, "--other-rack")
     if height is not None and angle is not None:
         raise InputError("--travel and --roll: a roll angle sets the wheel travels; leave one of them out")

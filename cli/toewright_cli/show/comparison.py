@@ -113,7 +113,7 @@ def _print_change(compared: Comparison, k: int, side: str) -> None:
     )
     say("")
     say(f"Change of bump steer from A to {'ABCDEF'[k]}, {side} wheel: deg per wheel, toe-in +", style="bold")
-    headings = ["wheel travel\nmm, bump +", *(f"rack\n{number(float(maps.rack_travel[i]), 1)} mm" for i in columns)]
+    headings = ["wheel travel\nmm, bump +", *(f"rack mm\n{number(float(maps.rack_travel[i]), 1)}" for i in columns)]
     rows = [
         [number(float(maps.wheel_travel[j]), 1), *(number(float(change[i, j]), 3) for i in columns)]
         for j in reversed(lines)

@@ -45,27 +45,50 @@ _TITLES = {
     "single": "One wheel",
 }
 
+_SPARE = ("wheel_travel_right", "recession_left", "recession_right", "roll_centre_y", "track_change")
+"""Columns that a narrow terminal leaves out, the first one first."""
+
+_SIGNS = {
+    "bump": "bump +, rebound -",
+    "roll_angle": "roll: right side down +",
+    "axle_steer": "steer to the left +",
+    "camber": "camber top outboard +",
+    "camber_road": "camber top outboard +",
+    "wheel_travel": "wheel travel: bump +",
+    "track_change": "track change wider +",
+    "recession": "recession rearward +",
+    "roll_centre_z": "roll centre (roll c.): height above the road +",
+    "roll_centre_y": "its lateral place left +",
+    "swing_arm": "swing arm: instant centre inboard +",
+    "anti_dive": "anti-dive: braking lifts the nose +",
+    "anti_lift": "anti-lift: brakes tail down +, drive nose down +",
+    "anti_squat": "anti-squat: driving lifts the tail +",
+}
+"""Signs of the columns, less their sides."""
+
 
 def print_ride(axle: Axle, ridden: RideMaps, scale: ToeScale) -> None:
     """The compact table of each motion with its worst place, then the notes."""
     say(axle.title, style="bold")
     rack = "" if axle.rack is None else f"; rack at {number(ridden.rack_travel, 1)} mm"
     say(f"{axle.path}: {axle_words(axle)}{rack}")
+    shown, anti = set[str](), False
     for motion in dict.fromkeys(ridden.motion.tolist()):
         rows = np.flatnonzero(ridden.part(motion))
         say("")
         what = _TITLES[motion] if motion != "single" else f"The {ridden.moving_side} wheel alone, the other one stays"
         say(f"{what}; toe change (toe ch.) from zero travel in {scale.words}", style="bold")
-        _print_motion(axle, ridden, motion, rows, scale)
-    say(
-        "Signs: camber top outboard +; steer to the left +; recession rearward +; track change wider +; roll: right side down +; "
-        "roll centre (roll c.): above the road +, left +; swing arm: instant centre inboard +."
-    )
-    for note in ridden.notes:
-        say(note)
+        names = _print_motion(axle, ridden, motion, rows, scale)
+        shown |= {name.removesuffix("_left").removesuffix("_right") for name in names}
+        anti = anti or motion == "bump"
+    say(f"Signs: {'; '.join(dict.fromkeys(words for name, words in _SIGNS.items() if name in shown))}.")
+    if anti:
+        for note in ridden.notes:
+            say(note)
 
 
-def _print_motion(axle: Axle, ridden: RideMaps, motion: str, rows: np.ndarray[Any, Any], scale: ToeScale) -> None:
+def _print_motion(axle: Axle, ridden: RideMaps, motion: str, rows: np.ndarray[Any, Any], scale: ToeScale) -> list[str]:
+    """Print a motion's table and its sentences; returns the names of its columns."""
     at = ridden["roll_angle" if motion == "roll" else "bump"][rows]
     zero = int(np.argmin(np.abs(at)))
     picked = [int(rows[k]) for k in reversed(spread_indices(rows.size, ROWS, zero))]
@@ -84,9 +107,12 @@ def _print_motion(axle: Axle, ridden: RideMaps, motion: str, rows: np.ndarray[An
             value = float(ridden[name][i])
             cells.append(scale.cell(value).rstrip() if places < 0 else number(value, places))
         table.append([number(position, 1), *cells])
-    print_table(headings, table, right=range(len(headings)))
+    names = ["roll_angle" if motion == "roll" else "bump", *(name for _, name, _ in columns)]
+    spare = [names.index(name) for name in _SPARE if name in names]
+    print_table(headings, table, right=range(len(headings)), spare=spare)
     for sentence in ride_sentences(ridden, motion, rows, scale, alike):
         say(sentence)
+    return names
 
 
 def _columns(ridden: RideMaps, motion: str, alike: bool) -> list[tuple[str, str, int]]:

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from toewright.views.sentences import SHOWN_FROM, ackermann_sentences, circle_sentences, largest_slip
+from toewright.views.sentences import ackermann_sentences, ackermann_shown, circle_sentences, largest_slip
 from toewright.views.words import axle_words, number, span_words, spread_indices
 from toewright_cli.console import print_table, say
 from toewright_cli.outputs import meanings, source_of
@@ -67,10 +67,10 @@ def print_turn(axle: Axle, turned: TurnMaps, limits: AxleLimits, held: str) -> N
         "turn\nradius",
     ]
     units = ["mm", "deg", "deg", "deg", "deg", "deg", "deg", "%", "deg", "m"]
-    slip = largest_slip(turned)
+    slip, large = largest_slip(turned), ackermann_shown(mean)
     rows = []
     for i in chosen:
-        shown = abs(mean[i]) >= SHOWN_FROM
+        shown = bool(large[i])
         state = str(turned.status_names[i])
         if state != "ok":
             rows.append([number(float(turned.rack_travel[i]), 1), state, *[""] * 8])
@@ -90,7 +90,9 @@ def print_turn(axle: Axle, turned: TurnMaps, limits: AxleLimits, held: str) -> N
             ]
         )
     print_table([f"{h}\n{u}" for h, u in zip(headings, units, strict=True)], rows, right=range(10))
-    say("Steer angles: to the left +. Error: inner wheel turns too much +. Ackermann: 100 true, 0 parallel, - reverse.")
+    say(
+        "Steer angles and hand wheel: to the left +. Error: inner wheel turns too much +. Ackermann: 100 true, 0 parallel, - reverse."
+    )
     if one_way:
         say("The other way round is the mirror image.")
     for sentence in (*ackermann_sentences(turned), *circle_sentences(turned), *turned.notes):

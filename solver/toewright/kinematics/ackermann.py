@@ -25,6 +25,9 @@ DEFINITIONS: Mapping[str, str] = {
 STRAIGHT = 0.5
 """Mean steer (deg) below which Ackermann percent is left empty: it is a quotient of two vanishing differences."""
 
+ROUNDING = 1e-9
+"""Mean steer (deg) that is no more than rounding: straight ahead."""
+
 
 @dataclass(frozen=True)
 class Ackermann:
@@ -56,7 +59,8 @@ def ackermann_geometry(
         steer: (2, N) steer angle of left and right, deg, left +.
         contact: (2, N, 2) contact points x, y, mm.
         x_r: x of the other axle's line, mm.
-        front: a front axle's outer wheel is the right one when it steers to the left; a rear axle's is the left one.
+        front: a front axle's outer wheel is the right one when it steers to the left; a rear axle's is the left one. Straight
+            ahead, where there is no outer wheel, it is taken as in a turn to the left.
         definition: one of DEFINITIONS, for the percentage.
 
     Raises:
@@ -65,7 +69,10 @@ def ackermann_geometry(
     if definition not in DEFINITIONS:
         raise ValueError(f"ackermann is {definition!r}; allowed are {', '.join(DEFINITIONS)}")
     mean = 0.5 * (steer[0] + steer[1])
-    right_is_outer = (mean > 0.0) if front else (mean < 0.0)
+    turn = np.where(
+        np.abs(mean) < ROUNDING, 0.0, mean
+    )  # straight ahead counts as a turn to the left, whatever rounding says
+    right_is_outer = (turn >= 0.0) if front else (turn < 0.0)
     pick = np.where(right_is_outer, 1, 0)
     rows = np.arange(mean.size)
     outer, inner = steer[pick, rows], steer[1 - pick, rows]

@@ -8,7 +8,7 @@ import numpy as np
 
 from toewright.core import layout
 from toewright.core.types import FloatArray
-from toewright.model.axle import Axle, Corner
+from toewright.model.axle import Axle
 
 SIDES = ("left", "right")
 """The corners of an axle, in the order of every result."""
@@ -16,20 +16,9 @@ SIDES = ("left", "right")
 COORDINATES = ("x", "y", "z")
 
 
-def corner_of(axle: Axle, side: str) -> Corner:
-    """The axle's corner on one side.
-
-    Raises:
-        ValueError: if side is neither "left" nor "right".
-    """
-    if side not in SIDES:
-        raise ValueError(f"side is {side!r}; allowed are 'left' and 'right'")
-    return axle.left if side == "left" else axle.right
-
-
 def design_vector(axle: Axle, side: str) -> FloatArray:
     """Design vector (35,) of one corner: mm, deg, ISO 8855 axes; see toewright.core.layout for its entries."""
-    corner = corner_of(axle, side)
+    corner = axle.corner(side)
     vector = np.zeros(layout.DESIGN_SIZE)
     for slot, name in enumerate(layout.SLOTS[corner.kind]):
         if name:

@@ -10,7 +10,7 @@ import numpy as np
 from toewright.core import kernels, layout
 from toewright.core.types import FloatArray, StatusArray
 from toewright.kinematics.batch import TRAVEL_AT, solve_batch
-from toewright.kinematics.design import SIDES, coordinate_index, coordinate_names, corner_of, design_vectors
+from toewright.kinematics.design import SIDES, coordinate_index, coordinate_names, design_vectors
 from toewright.model.axle import Axle
 
 SLOPE_COLUMNS = tuple(name for name in layout.COLUMNS if name not in ("residual", "grip"))
@@ -105,7 +105,7 @@ def slopes(
     unknown = [name for name in columns if name not in SLOPE_COLUMNS and name != "bump_steer"]
     if unknown:
         raise ValueError(f"{unknown[0]!r} has no derivative; allowed are bump_steer, {', '.join(SLOPE_COLUMNS)}")
-    corners = [corner_of(axle, side) for side in sides]
+    corners = [axle.corner(side) for side in sides]
     if parameters is None:
         parameters = (*coordinate_names(corners[0].kind), *MOTION_PARAMETERS)
     at_rack, at_travel = np.atleast_1d(np.asarray(rack, float)), np.atleast_1d(np.asarray(travel, float))

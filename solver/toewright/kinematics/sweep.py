@@ -10,7 +10,7 @@ from numpy.typing import ArrayLike
 from toewright.core import layout
 from toewright.core.types import FloatArray
 from toewright.kinematics.batch import Batch, solve_batch
-from toewright.kinematics.design import SIDES, corner_of, design_vectors
+from toewright.kinematics.design import SIDES, design_vectors
 from toewright.kinematics.joints import joint_positions, link_angles
 from toewright.kinematics.maps import VECTORS, CornerMaps, Stop
 from toewright.kinematics.status import OK, STATUS_NAMES
@@ -103,7 +103,7 @@ def corner_maps(
         name: np.stack([batch[f"{stem}_{letter}"] for letter in "xyz"], axis=-1) for name, stem in VECTORS.items()
     }
     axis = axle.rack.axis if axle.rack is not None else np.zeros(3)
-    corners = [corner_of(axle, side) for side in sides]
+    corners = [axle.corner(side) for side in sides]
     joints = [joint_positions(c, batch.poses[i], rack[:, np.newaxis], axis) for i, c in enumerate(corners)]
     return CornerMaps(
         sides=sides,

@@ -20,6 +20,7 @@ from toewright.kinematics.tables import ResultTable
 from toewright.model.axle import Axle
 from toewright.model.errors import InputError
 from toewright.model.files import load
+from toewright.model.remarks import other_axle_missing
 
 TURN_COLUMNS = (
     "rack_travel",
@@ -128,7 +129,13 @@ def _other_wheels(
         return _Wheels(
             np.zeros((2, rack.size)), contact, status, None
         ), "the other axle's wheels stand straight at this axle's track"
-    other = load(place)
+    missing = other_axle_missing(axle)
+    if missing is not None:
+        raise InputError(f"{axle.path or axle.title}: {missing}, or leave it out")
+    try:
+        other = load(place)
+    except InputError as error:
+        raise InputError(f"{axle.path or axle.title}: vehicle.other_axle: {error}") from error
     if other.vehicle.axle == axle.vehicle.axle:
         raise InputError(
             f"{axle.path or axle.title}: vehicle.other_axle: {place} is a {other.vehicle.axle} axle too; name the other one"
@@ -197,7 +204,7 @@ def turn(
     ratio = np.full(at.size, np.nan)
     hand = np.full(at.size, np.nan)
     if axle.rack is not None and axle.rack.travel_per_turn is not None:
-        per_mm = 360.0 / axle.rack.travel_per_turn
+        per_mm = _left_sign(design) * 360.0 / axle.rack.travel_per_turn
         hand = per_mm * at
         with np.errstate(divide="ignore", invalid="ignore"):
             ratio = per_mm / (0.5 * (poses["steer_rate"][0] + poses["steer_rate"][1]))
@@ -247,6 +254,12 @@ def turn(
         definition=ackermann,
         inner_turns_more=np.where(status == OK, np.abs(quality.inner) - np.abs(quality.outer), np.nan),
     )
+
+
+def _left_sign(design: _Wheels) -> float:
+    """+1 where rack travel to + turns the wheels to the left, -1 where it turns them to the right (a rack behind the axle)."""
+    assert design.poses is not None
+    return -1.0 if float(np.sum(design.poses["steer_rate"][:, 0])) < 0.0 else 1.0
 
 
 def _wall_circle(axle: Axle, x_r: float, centre: FloatArray) -> FloatArray:

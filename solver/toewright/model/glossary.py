@@ -46,7 +46,9 @@ _MOTION: tuple[_Row, ...] = (
      "displacement of the rack along its axis from the design position; the axis points to the left unless rack.axis says otherwise"),
     ("wheel_travel", "", "mm", "wheel travel", "bump +, rebound -",
      "vertical displacement from the design position relative to the body, of the wheel centre or of the contact point (travel_at)"),
-    ("hand_wheel_angle", "", "deg", "hand-wheel angle", "with rack travel +", "360 rack_travel / travel_per_turn"),
+    ("hand_wheel_angle", "", "deg", "hand-wheel angle", "to the left +",
+     "360 rack_travel / travel_per_turn, with the sign that makes it + where the wheels turn to the left (a rack behind the axle moves to the "
+     "right for that)"),
 )  # fmt: skip
 
 _CORNER: tuple[_Row, ...] = (
@@ -54,9 +56,9 @@ _CORNER: tuple[_Row, ...] = (
      "atan2(-a_x, a_y): angle of the wheel plane from x about z (ISO 8855:2011, 7.1)"),
     ("toe_in", "", "deg", "toe-in", "toe-in +", "-s steer_angle of one wheel: + where its front is nearer the centre plane (ISO 8855:2011, 7.1)"),
     ("camber", "epsilon", "deg", "camber", "top outboard +", "-s asin(a_z), against the body (sign as ISO 8855 and SAE J670)"),
-    ("caster", "tau", "deg", "caster", "top rearward +", "atan2(-k_x, k_z): steering axis in side view (sign as ISO 8855 and SAE J670)"),
+    ("caster", "tau", "deg", "caster", "top rearward +", "atan2(-k_x, k_z): steering axis in side view (sign as ISO 8855 and SAE J670); past 90 deg where the axis tips past horizontal"),
     ("kingpin_inclination", "sigma", "deg", "kingpin inclination", "top inboard +",
-     "atan2(-s k_y, k_z): steering axis in front view (sign as ISO 8855 and SAE J670)"),
+     "atan2(-s k_y, k_z): steering axis in front view (sign as ISO 8855 and SAE J670); past 90 deg where the axis tips past horizontal"),
     ("scrub_radius", "", "mm", "scrub radius", "steering axis inboard +",
      "s (c - g).l, kingpin offset at ground (sign as D. C. Barton, J. D. Fieldhouse, Automotive Chassis Engineering, Springer 2018, 3.1.5.3)"),
     ("mechanical_trail", "", "mm", "mechanical trail", "steering axis ahead +", "(g - c).h, caster offset at ground"),
@@ -85,7 +87,7 @@ _VECTORS: tuple[_Row, ...] = (
      "where the steering axis meets the horizontal plane through the contact point"),
     ("spin_axis", "a", "-", "spin axis", "to the vehicle's left on both sides",
      "unit vector of the wheel's axis; at design (-sin d cos e, cos d cos e, sin e) with d = -s toe_in, e = -s camber"),
-    ("steering_axis", "k", "-", "steering axis", "pointing up",
+    ("steering_axis", "k", "-", "steering axis", "from the lower to the upper joint, up",
      "unit vector, lower to upper ball joint; strut: lower ball joint to top mount"),
     ("wheel_heading", "h", "-", "wheel heading", "forward", "unit(a_y, -a_x, 0): where the wheel rolls on a road parallel to the body's xy plane"),
     ("wheel_normal", "l", "-", "wheel normal", "to the left", "z x h: the wheel's lateral direction in the road"),
@@ -113,7 +115,8 @@ _TURNING: tuple[_Row, ...] = (
     ("steer_right", "", "deg", "steer angle, right wheel", "to the left +", "steer_angle of the right wheel"),
     ("mean_steer", "", "deg", "mean steer angle", "to the left +", "mean of steer_left and steer_right"),
     ("ideal_inner_steer", "", "deg", "ideal inner steer angle", "to the left +",
-     "atan((c_ix - x_r)/(y_c - c_iy)): steer of the inner wheel (i) whose normal goes through the turn centre of the outer one (o), "
+     "atan((c_ix - x_r)/(y_c - c_iy)): steer of the inner wheel (i) whose normal goes through the turn centre of the outer one (o; straight "
+     "ahead, where neither is, as in a left turn), "
      "y_c = c_oy + (c_ox - x_r) cot(delta_o) on the line x = x_r of the other axle (ISO 8855:2011, 7.1: Ackermann geometry)"),
     ("ackermann_error", "", "deg", "Ackermann error", "inner wheel turns too much +", "|inner steer| - |ideal inner steer|"),
     ("ackermann_percent", "", "%", "Ackermann percent", "100 true Ackermann, 0 parallel, - reverse",
@@ -221,15 +224,6 @@ def axis_label(name: str, unit: str | None = None) -> str:
     unit = unit or entry.unit
     details = ", ".join(part for part in ("" if unit == "-" else unit, entry.sign) if part)
     return f"{entry.label} ({details})" if details else entry.label
-
-
-def column_units(names: Iterable[str]) -> dict[str, str]:
-    """Name to unit, in the order given.
-
-    Raises:
-        KeyError: if there is no such quantity.
-    """
-    return {name: quantity(name).unit for name in names}
 
 
 def explain(names: Iterable[str]) -> list[tuple[str, str, str, str]]:

@@ -137,7 +137,13 @@ def _rack(axle: Axle) -> list[str]:
 
 
 def _vehicle(axle: Axle) -> list[str]:
+    missing = other_axle_missing(axle)
+    return [] if missing is None else [missing]
+
+
+def other_axle_missing(axle: Axle) -> str | None:
+    """What is wrong where ``vehicle.other_axle`` names a file that is not there; None where all is well."""
     other = axle.vehicle.other_axle
-    if other is not None and not other.is_file():
-        return [f"vehicle.other_axle: there is no file {other}: correct the name (it counts from this file's folder)"]
-    return []
+    if other is None or other.is_file():
+        return None
+    return f"vehicle.other_axle: there is no file {other}: correct the name (it counts from this file's folder)"

@@ -10,7 +10,7 @@ from toewright.studies.comparison import Comparison
 from toewright.views.plots_ride import draw_ride_curves
 from toewright.views.plots_sweep import footer_of, has_map, panel_curves, panel_maps, panel_over_rack
 from toewright.views.plots_turn import draw_error
-from toewright.views.sentences import SHOWN_FROM
+from toewright.views.sentences import ackermann_shown
 from toewright.views.style import ROW, results_figure, styled
 
 if TYPE_CHECKING:
@@ -40,7 +40,7 @@ def comparison_figure(compared: Comparison, *, plain: bool = False) -> Figure:
         for side in sides:
             draw = panel_curves if over_travel else panel_over_rack
             draw(parts.pop(0), axles, maps, side)
-        turning = [t for t in compared.turns if np.any(np.abs(t["mean_steer"]) >= SHOWN_FROM)]
+        turning = [t for t in compared.turns if np.any(ackermann_shown(t["mean_steer"]))]
         both = bool(turning) and len(turning) == len(axles)
         grid = np.atleast_1d(np.asarray(parts.pop(0).subplots(1, 2)))
         draw_ride_curves(grid[0], axles, compared.rides, "roll", "axle_steer")

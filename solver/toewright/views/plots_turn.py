@@ -14,7 +14,7 @@ from toewright.model.axle import Axle
 from toewright.model.errors import InputError
 from toewright.model.glossary import axis_label
 from toewright.views.plots_sweep import check_cases, footer_of
-from toewright.views.sentences import SHOWN_FROM, largest_slip
+from toewright.views.sentences import SHOWN_FROM, ackermann_shown, largest_slip
 from toewright.views.style import MARKERS, QUIET, ROW, SERIES, label_y, results_figure, styled, zero_lines
 from toewright.views.words import case_labels
 
@@ -45,7 +45,7 @@ def _draw_steer(axes: Axes, turns: Sequence[TurnMaps], labels: Sequence[str]) ->
         axes.plot(
             rack, turned["steer_right"], color=right, linestyle="--", label="right wheel" if single else "_right wheel"
         )
-        shown = np.where(np.abs(turned["mean_steer"]) >= SHOWN_FROM, turned["ideal_inner_steer"], np.nan)
+        shown = np.where(ackermann_shown(turned["mean_steer"]), turned["ideal_inner_steer"], np.nan)
         shown[1:][np.abs(np.diff(shown)) > 90.0] = (
             np.nan
         )  # beyond 90 deg the inner wheel would have to point the other way
@@ -69,7 +69,8 @@ def _draw_steer(axes: Axes, turns: Sequence[TurnMaps], labels: Sequence[str]) ->
 def _branches(axle: Axle, turned: TurnMaps) -> list[tuple[str, str, np.ndarray[Any, Any]]]:
     """Words, line style and mask (N,) of the turns to draw: one way where the other is its mirror image."""
     mean = turned["mean_steer"]
-    ways = [("left turns", "-", mean >= SHOWN_FROM), ("right turns", "--", mean <= -SHOWN_FROM)]
+    shown = ackermann_shown(mean)
+    ways = [("left turns", "-", shown & (mean > 0.0)), ("right turns", "--", shown & (mean < 0.0))]
     rack = turned.rack_travel
     if mirror_images(axle) and np.allclose(rack, -rack[::-1]) and np.allclose(mean, -mean[::-1], equal_nan=True):
         return [("either way", "-", ways[0][2])]
@@ -137,7 +138,7 @@ def turn_figure(axles: Sequence[Axle], turns: Sequence[TurnMaps], *, plain: bool
     for axle, turned in zip(axles, turns, strict=True):
         if axle.rack is None:
             raise InputError(f"{axle.path or axle.title}: has no [rack], so it has no turn to draw; leave it out")
-        if not np.any(np.abs(turned["mean_steer"]) >= SHOWN_FROM):
+        if not np.any(ackermann_shown(turned["mean_steer"])):
             raise InputError(
                 f"{axle.path or axle.title}: no rack position reaches {SHOWN_FROM:g} deg of mean steer, where the plots of a turn "
                 "begin; give --rack a wider LIST"

@@ -22,6 +22,7 @@ from toewright.views.scene.build import Pose, build_scene
 from toewright.views.sentences import (
     SHOWN_FROM,
     ackermann_sentences,
+    ackermann_shown,
     circle_sentences,
     ride_sentences,
 )
@@ -291,7 +292,7 @@ def turn_section(axle: Axle) -> Section:
     names += [("steer_left", 2), ("steer_right", 2), ("ideal_inner_steer", 2), ("ackermann_error", 2)]
     names += [("ackermann_percent", 0), ("turn_radius", 2), ("kerb_circle", 2)]
     table = result_table("Steer angles and Ackermann quality", turned, names, picked)
-    small = [k for k, i in enumerate(picked.tolist()) if not abs(mean[i]) >= SHOWN_FROM]
+    small = [k for k, i in enumerate(picked.tolist()) if not ackermann_shown(mean)[i]]
     blank = range(next(k for k, (name, _) in enumerate(names) if name == "ideal_inner_steer"), len(names))
     rows = [
         ["-" if k in small and c in blank else cell for c, cell in enumerate(row)] for k, row in enumerate(table.rows)
@@ -300,7 +301,7 @@ def turn_section(axle: Axle) -> Section:
     if mirrored:
         sentences.append("The table shows one way round; the other is the mirror image.")
     pictures = []
-    if np.any(np.abs(mean) >= SHOWN_FROM):
+    if np.any(ackermann_shown(mean)):
         pictures.append(
             svg_picture(
                 turn_figure([axle], [turn(axle, default_rack(axle, FINE))], plain=True),

@@ -24,7 +24,16 @@ if TYPE_CHECKING:
 SHOWN_FROM = 3.0
 """Mean steer (deg) from which Ackermann figures are shown: below, static toe dominates them."""
 
+_AS_PRINTED = 0.005
+"""Half the last decimal of a printed steer angle: what reads as SHOWN_FROM counts as it."""
+
 SLIPS = ("slip_front_left", "slip_front_right", "slip_rear_left", "slip_rear_right")
+
+
+def ackermann_shown(mean_steer: FloatArray) -> np.ndarray[Any, np.dtype[np.bool_]]:
+    """Where Ackermann figures are shown: mean steer (N,) in deg of SHOWN_FROM or more either way."""
+    shown: np.ndarray[Any, np.dtype[np.bool_]] = np.abs(mean_steer) >= SHOWN_FROM - _AS_PRINTED
+    return shown
 
 
 def sheet_remarks(axle: Axle, sheets: Sequence[CornerSheet]) -> list[str]:
@@ -89,7 +98,7 @@ def _extreme(values: FloatArray, among: np.ndarray[Any, Any]) -> int | None:
 
 def ackermann_sentences(turned: TurnMaps) -> list[str]:
     """Which wheel turns more, in words, and the worst Ackermann error."""
-    large = np.abs(turned["mean_steer"]) >= SHOWN_FROM
+    large = ackermann_shown(turned["mean_steer"])
     if not np.any(large):
         return [
             f"Ackermann figures begin at {SHOWN_FROM:g} deg of mean steer, below which static toe dominates them: none here."
@@ -103,10 +112,9 @@ def ackermann_sentences(turned: TurnMaps) -> list[str]:
         words = "both wheels turn alike (parallel steer)"
     else:
         reverse = np.abs(turned["mean_steer"][large])[more < 0.0]
-        words = (
-            f"the outer wheel turns more than the inner (reverse Ackermann) at mean steer {reverse.min():.1f} to {reverse.max():.1f} deg, "
-            "the inner more elsewhere"
-        )
+        low, high = f"{reverse.min():.1f}", f"{reverse.max():.1f}"
+        span = low if low == high else f"{low} to {high}"
+        words = f"the outer wheel turns more than the inner (reverse Ackermann) at mean steer {span} deg, the inner more elsewhere"
     found = [f"From {SHOWN_FROM:g} deg of mean steer (below, static toe dominates): {words}."]
     worst = _extreme(turned["ackermann_error"], large)
     if worst is not None:
@@ -173,8 +181,14 @@ def ride_sentences(
             found.append(
                 f"Worst place: toe changes by {scale.text(value)}, {wheel}, at {number(float(at[k]), 1)} {unit}."
             )
-    lost = ridden.status[rows] != 0
-    if lost.any():
-        k = int(rows[int(np.argmin(np.where(lost, np.abs(at[rows]), np.inf)))])
-        found.append(f"Not reached from {number(float(at[k]), 1)} {unit} on: {ridden.status_names[k]}.")
+    ends = []
+    for way in (1.0, -1.0):
+        lost = (ridden.status[rows] != 0) & (at[rows] * way >= 0.0)
+        if lost.any():
+            k = int(rows[int(np.argmin(np.where(lost, np.abs(at[rows]), np.inf)))])
+            ends.append(
+                f"from {number(float(at[k]), 1)} {unit} {'up' if way > 0 else 'down'} ({ridden.status_names[k]})"
+            )
+    if ends:
+        found.append(f"Not reached: {' and '.join(dict.fromkeys(ends))}.")
     return found
