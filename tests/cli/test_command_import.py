@@ -122,6 +122,42 @@ def test_name_maps(cli: Cli, tmp_path: Path) -> None:
     assert_marten(out)
 
 
+def test_corner_letters_give_side_and_axle(cli: Cli, tmp_path: Path) -> None:
+    table, out = tmp_path / "car.csv", tmp_path / "car.toml"
+    rows = [f"{word} {name},{x!r},{y!r},{z!r}" for word, side in (("RL", "left"), ("RR", "right")) for name, (x, y, z) in
+            ((n, map(float, p)) for n, p in IBEX.corner(side).points.items())]  # fmt: skip
+    table.write_text("\n".join(["name,x [mm],y [mm],z [mm]", *rows]) + "\n")
+    refused = cli("import", table, "-o", out, "--loaded-radius", 395, "--axle", "front")
+    assert refused.code == 2
+    assert "--axle front: but the names say rear" in refused.complaint
+    assert not out.exists()
+    made = cli("import", table, "-o", out, "--loaded-radius", 395)
+    assert made.code == 0, made.err
+    assert "Concluded: rear axle (from the names)." in made.out
+    axle = load(out)
+    assert axle.vehicle.axle == "rear"
+    for side in ("left", "right"):
+        for name, point in IBEX.corner(side).points.items():
+            np.testing.assert_array_equal(axle.corner(side).points[name], point)
+
+
+def test_heights_from_the_radius_are_said(cli: Cli, tmp_path: Path) -> None:
+    table, out = tmp_path / "arm.csv", tmp_path / "car.toml"
+    table.write_text(arm_table())
+    made = cli("import", table, "-o", out, "--loaded-radius", 228, "--side", "left", "--origin", "under-wheel")
+    assert made.code == 0, made.err
+    assert "the road was put 228 mm below the wheel centre, so the points are taken to be at ride height" in made.out
+
+
+def test_title_lines_above_the_header_are_named(cli: Cli, tmp_path: Path) -> None:
+    table, out = tmp_path / "arm.csv", tmp_path / "car.toml"
+    table.write_text("Front suspension\nrevision B\n" + points_to_csv(MARTEN, "left"))
+    refused = cli("import", table, "-o", out, "--loaded-radius", 228)
+    assert refused.code == 2
+    assert "line 1" in refused.complaint
+    assert "remove title lines above the header" in refused.complaint
+
+
 def test_odd_points_are_shown_but_written(cli: Cli, tmp_path: Path) -> None:
     table, out = tmp_path / "arm.csv", tmp_path / "car.toml"
     table.write_text(points_to_csv(MARTEN, "left").replace("131.0,214.0,124.0", "131.0,214.0,424.0"))

@@ -31,7 +31,9 @@ def test_spellings(kind: str, spelling: object) -> None:
     assert matched.rows == {None: {name: row for row, name in enumerate(names)}}
 
 
-@pytest.mark.parametrize("words", [("left ", "right "), ("LH-", "RH-"), ("lhs.", "rhs.")])
+@pytest.mark.parametrize(
+    "words", [("left ", "right "), ("LH-", "RH-"), ("lhs.", "rhs."), ("L_", "R_"), ("FL ", "FR "), ("rl.", "rr.")]
+)
 def test_sides_in_names(words: tuple[str, str]) -> None:
     labels = [word + name for word in words for name in WISHBONE]
     both = match_names([*labels, "spring seat"], {}, None, None, "t.csv")
@@ -48,6 +50,94 @@ def test_side_in_the_options_only_and_names_in_part() -> None:
     assert list(matched.rows) == ["right"]
     labels = [f"left {name}" if "pivot" in name else name for name in WISHBONE]
     assert list(match_names(labels, {}, None, None, "t.csv").rows) == ["left"]
+
+
+@pytest.mark.parametrize("ends", [("_L", "_R"), (" FL", " FR"), (" left", " right")])
+def test_one_pair_serves_both_sides(ends: tuple[str, str]) -> None:
+    theirs = {name: f"P{number}x" for number, name in enumerate(WISHBONE)}
+    labels = [theirs[name] + end for end in ends for name in WISHBONE]
+    with pytest.raises(InputError, match=r"name them with --names theirs=ours \(one pair serves both sides\)"):
+        match_names(labels, {}, None, None, "t.csv")
+    expected = {
+        "left": dict(zip(WISHBONE, range(9), strict=True)),
+        "right": dict(zip(WISHBONE, range(9, 18), strict=True)),
+    }
+    for of in (0, 1):  # whichever side the pairs were written for
+        names = {theirs[name] + ends[of]: name for name in WISHBONE}
+        assert match_names(labels, names, None, None, "t.csv").rows == expected
+        assert match_names(labels, names, None, "left", "t.csv").rows == {"left": expected["left"]}
+    both = parse_names([f"{theirs[name]}{end}={name}" for end in ends for name in WISHBONE])
+    assert match_names(labels, both, None, None, "t.csv").rows == expected
+
+
+def test_advice_for_a_table_of_both_sides_leads_to_both() -> None:
+    labels = [f"{name.replace('wheel_centre', 'wheel_cntr')}_{side}" for side in "LR" for name in WISHBONE]
+    with pytest.raises(InputError) as caught:
+        match_names(labels, {}, None, None, "t.csv")
+    advice = str(caught.value)
+    assert advice.endswith("(one pair serves both sides)")
+    (pair,) = [word for word in advice.split() if "=" in word]
+    matched = match_names(labels, parse_names([pair]), None, None, "t.csv")
+    assert {side: sorted(rows.values()) for side, rows in matched.rows.items()} == {
+        "left": list(range(9)),
+        "right": list(range(9, 18)),
+    }
+
+
+def test_letters_that_mean_rear_are_no_side() -> None:
+    theirs = {
+        "upper_pivot_front": "UCA F",
+        "upper_pivot_rear": "UCA R",
+        "lower_pivot_front": "LCA F",
+        "lower_pivot_rear": "LCA R",
+    }
+    labels = [theirs.get(name, name) for name in WISHBONE]
+    matched = match_names(labels, {label: name for name, label in theirs.items()}, None, None, "t.csv")
+    assert matched.rows == {None: {name: row for row, name in enumerate(WISHBONE)}}
+    sided = [f"left {label}" for label in labels]
+    assert list(match_names(sided, {f"left {t}": o for o, t in theirs.items()}, None, None, "t.csv").rows) == ["left"]
+
+
+@pytest.mark.parametrize("ends", [(" 1", " 2"), (".001", ".002"), ("_A", "_B")])
+def test_two_corners_that_names_do_not_tell_apart_are_refused(ends: tuple[str, str]) -> None:
+    labels = [name + end for end in ends for name in WISHBONE]
+    with pytest.raises(
+        InputError, match=r"more than one corner \('upper_pivot_front.*write left or right in the names"
+    ):
+        match_names(labels, {}, None, None, "t.csv")
+    first = {name + ends[0]: name for name in WISHBONE}
+    with pytest.raises(InputError, match="more than one corner"):
+        match_names(labels, first, None, None, "t.csv")
+    assert match_names(labels, first, None, "right", "t.csv").rows == {
+        "right": dict(zip(WISHBONE, range(9), strict=True))
+    }
+
+
+def test_numbered_points_of_one_corner_are_no_second_corner() -> None:
+    theirs = dict(
+        zip(WISHBONE, ("uca 1", "uca 2", "ubj", "lca 1", "lca 2", "lbj", "tie 1", "tie 2", "hub"), strict=True)
+    )
+    labels = [theirs[name] for name in WISHBONE]
+    with pytest.raises(InputError, match="name them with --names"):
+        match_names(labels, {}, None, None, "t.csv")
+    assert None in match_names([*labels, "hub 2"], {t: o for o, t in theirs.items()}, None, None, "t.csv").rows
+    plain = [f"pt {number}" for number in range(12)]
+    assert None in match_names(plain, dict(zip(plain, WISHBONE, strict=False)), None, None, "t.csv").rows
+
+
+def test_axle_in_the_names() -> None:
+    assert match_names([f"RL {n}" for n in WISHBONE], {}, None, None, "t.csv").axle == "rear"
+    assert match_names([f"LF {n}" for n in WISHBONE], {}, None, None, "t.csv").axle == "front"
+    assert match_names(WISHBONE, {}, None, None, "t.csv").axle is None
+    whole_car = [f"{word} {n}" for word in ("FL", "FR", "RL", "RR") for n in WISHBONE]
+    with pytest.raises(
+        InputError, match="'FL upper_pivot_front' and 'RL upper_pivot_front'; leave the rows of one axle"
+    ):
+        match_names(whole_car, {}, None, None, "t.csv")
+    with pytest.raises(InputError, match="the names state front and rear; leave the rows of one axle"):
+        match_names([f"{'FL' if 'arm' in n or 'upper' in n else 'RL'} {n}" for n in WISHBONE], {}, None, None, "t.csv")
+    with pytest.raises(InputError, match="'left wheel_centre R' states both sides"):
+        match_names(["left wheel_centre R"], {}, None, None, "t.csv")
 
 
 def test_name_map_comes_first() -> None:

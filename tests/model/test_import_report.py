@@ -1,12 +1,15 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from pathlib import Path
 
 import numpy as np
 import pytest
-from corners import PLAIN
+from corners import PLAIN, SAMPLES
 from files_for_tests import RADIUS
 
+from toewright.kinematics.sweep import sweep
+from toewright.model import load
 from toewright.model.axis_maps import parse_axes
 from toewright.model.axle import Corner, Side
 from toewright.model.import_report import Sanity, sanity_list
@@ -45,6 +48,10 @@ ODD = [
     ("lower pivots inboard of the ball joint", {"lower_pivot_rear": [-142, 571, 118]}),
     ("upper ball joint above lower ball joint", {"upper_ball_joint": [-9, 528, 100]}),
     ("tie rod near the rack's height", {"tie_rod_inner": [62, 228, 260]}),
+    (
+        "tie rod's inner joint inboard of its outer one",
+        {"tie_rod_inner": [71, 548, 152], "tie_rod_outer": [62, 228, 148]},
+    ),
     ("lower arm near level, not at full droop", {"lower_pivot_front": [131, 214, 424]}),
     ("upper arm near level, not at full droop", {"upper_pivot_front": [118, 262, 591]}),
     ("wheel centre outboard of lower ball joint", {"wheel_centre": [0, 550, 228]}),
@@ -54,6 +61,26 @@ ODD = [
 @pytest.mark.parametrize(("what", "moved"), ODD, ids=[what for what, _ in ODD])
 def test_odd_points_are_named(what: str, moved: dict[str, list[float]]) -> None:
     assert what in odd(sanity_list([reading(**moved)], 228.0))
+
+
+@pytest.mark.parametrize("sample", SAMPLES, ids=lambda path: path.stem)
+def test_points_taken_at_droop_are_odd(sample: Path) -> None:
+    """The wheel hanging as far down as a car on a lift lets it: a fifth of the loaded radius, the points put back over the road."""
+    axle = load(sample)
+    down = 0.2 * axle.wheel.loaded_radius
+    hanging = sweep(axle, [0.0], [-down], sides=["left"])
+    points = {
+        name: places[0, 0] + [0.0, 0.0, down] for name, places in hanging.joints[0].items() if name in axle.left.points
+    }
+    assert points.keys() >= {"lower_ball_joint", "wheel_centre", "tie_rod_outer"}
+    fixed = {name: axle.left.points[name] + [0.0, 0.0, down] for name in axle.left.points if name not in points}
+    hung = replace(axle.left, points={**points, **fixed})
+    rows = sanity_list([Reading(hung, parse_axes("x,y,z"), "mm", np.zeros(3), {}, (), ())], axle.wheel.loaded_radius)
+    assert any("not at full droop" in what for what in odd(rows))
+    drawn = sanity_list(
+        [Reading(axle.left, parse_axes("x,y,z"), "mm", np.zeros(3), {}, (), ())], axle.wheel.loaded_radius
+    )
+    assert not any("not at full droop" in what for what in odd(drawn))
 
 
 def test_left_handed_tables_are_marked() -> None:

@@ -179,6 +179,33 @@ def test_both_sides_in_one_table(unit: str) -> None:
             assert_exact(reading, axle, side)
 
 
+LETTERS = [("L_", "R_"), ("FL ", "FR "), ("rl-", "rr-"), ("LF ", "RF ")]
+
+
+@pytest.mark.parametrize("words", LETTERS)
+@pytest.mark.parametrize("given", [{}, {"side": "left"}, {"side": "right"}, {"axes": "iso"}])
+def test_sides_by_letters_are_recovered_or_asked_about(words: tuple[str, str], given: dict[str, str]) -> None:
+    axle = AXLES["ibex_front"]  # its sides differ
+    for variant in VARIANTS[::7]:
+        tables = [
+            table_of(axle, (*variant[:3], side), word) for side, word in zip(("left", "right"), words, strict=True)
+        ]
+        names, values = tables[0].names + tables[1].names, np.vstack([tables[0].values, tables[1].values])
+        options: dict[str, object] = {**given}
+        if "axes" in given:
+            options["axes"] = right_axes(variant)
+        table = PointTable(names, values, "comma", "point", (), None)
+        if right_axes(variant).mirrors and "axes" not in given:
+            with pytest.raises(InputError, match="mirror image"):
+                conclude(table, "t.csv", loaded_radius=395.0, **options)  # type: ignore[arg-type]
+            continue
+        readings = conclude(table, "t.csv", loaded_radius=395.0, **options)  # type: ignore[arg-type]
+        assert [r.corner.side for r in readings] == ([given["side"]] if "side" in given else ["left", "right"])
+        for reading in readings:
+            assert_exact(reading, axle, reading.corner.side)
+            assert reading.axle == (None if words == LETTERS[0] else "rear" if words[0] == "rl-" else "front")
+
+
 def test_exchanged_sides_in_the_names_are_asked_about() -> None:
     axle = AXLES["ibex_front"]
     variant = ((0, 1, 2), (1.0, 1.0, 1.0), "mm", "left")
@@ -296,7 +323,11 @@ def test_unclear_axes_are_asked_about_and_taken_when_given() -> None:
 
 
 def test_exchanged_points_are_refused() -> None:
-    for one, other in (("lower_pivot_front", "lower_pivot_rear"), ("upper_ball_joint", "lower_ball_joint")):
+    for one, other in (
+        ("lower_pivot_front", "lower_pivot_rear"),
+        ("upper_ball_joint", "lower_ball_joint"),
+        ("tie_rod_inner", "tie_rod_outer"),
+    ):
         points = dict(PLAIN["double-wishbone"])
         points[one], points[other] = points[other], points[one]
         table = PointTable(tuple(points), np.array(list(points.values())), "comma", "point", (), "mm")

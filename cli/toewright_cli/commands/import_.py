@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
 
     from toewright.core.types import FloatArray
+    from toewright.model.axle import AxleEnd
     from toewright.model.importing import Origin, Reading
 
 
@@ -95,7 +96,9 @@ def import_points(
     kind: Annotated[
         Starter | None, typer.Option("--type", help="Corner type. Found from the names when left out.")
     ] = None,
-    axle: Annotated[AxleChoice, typer.Option("--axle", help="Which axle.")] = AxleChoice.FRONT,
+    axle: Annotated[
+        AxleChoice | None, typer.Option("--axle", help="Which axle. As the names say (FL, RR, ...), else front.")
+    ] = None,
     title: Annotated[str, typer.Option("--title", help="Title of the file. The table's name when left out.")] = "",
     wheelbase: Annotated[
         float | None, typer.Option("--wheelbase", metavar="MM", help="Distance to the other axle, mm.")
@@ -123,7 +126,7 @@ def import_points(
     from toewright.model.errors import InputError
     from toewright.model.files import loads, read_text
     from toewright.model.import_names import parse_names
-    from toewright.model.importing import conclude
+    from toewright.model.importing import UNDER_WHEEL, conclude
     from toewright.model.pointtable import read_point_table
     from toewright.model.writing import write_text
     from toewright_cli.outputs import check_out
@@ -157,13 +160,14 @@ def import_points(
     readings = read(points, OneSide.LEFT if right is not None else side)
     if right is not None:
         readings += read(right, OneSide.RIGHT)
+    end = _axle_end(readings, axle, points)
     first = readings[0].corner
     left = first if first.side == "left" else first.mirrored()
     source = " and ".join(path.name for path in (points, right) if path is not None)
     text = dumps(
         Axle(
             title=title or points.stem,
-            vehicle=Vehicle(axle=axle.value, wheelbase=wheelbase),
+            vehicle=Vehicle(axle=end, wheelbase=wheelbase),
             wheel=Wheel(loaded_radius),
             setup=Setup(toe_in, camber),
             rack=Rack(_to_the_left(), stroke) if stroke is not None else None,
@@ -182,10 +186,35 @@ def import_points(
     _show(readings, theirs, loaded_radius)
     if len(readings) == 1 and first.side == "right":
         say("The right corner was read; the file holds its mirror image as [left], and no [right].")
+    if axle is None and readings[0].axle is not None:
+        say(f"Concluded: {end} axle (from the names).")
+    if isinstance(start, str):
+        say(
+            f"Heights by --origin {UNDER_WHEEL}: the road was put {loaded_radius:g} mm below the wheel centre, so the points are "
+            "taken to be at ride height; if they were taken at full droop, every figure of this file is wrong."
+        )
     if stroke is None:
         say("No --stroke given, so the file has no [rack]: the tie rod is a toe link.")
     print_remarks(checked.remarks)
     say(f"Written: {out_file}. Compare the points with the drawing, then: toewright check {out_file}")
+
+
+def _axle_end(readings: Sequence[Reading], given: AxleChoice | None, file: Path) -> AxleEnd:
+    """Which axle: as given, else as the names say, else front.
+
+    Raises:
+        InputError: where the names say another one than was given.
+    """
+    from toewright.model.errors import InputError
+
+    stated = {reading.axle for reading in readings} - {None}
+    if len(stated) > 1 or (given is not None and stated and given.value not in stated):
+        words = " and ".join(sorted(str(word) for word in stated))
+        asked = f"--axle {given.value}: but the" if given is not None else "the"
+        raise InputError(f"{file}: {asked} names say {words}; correct one of them")
+    if given is not None:
+        return "front" if given is AxleChoice.FRONT else "rear"
+    return next((word for word in stated if word is not None), "front")
 
 
 def _to_the_left() -> FloatArray:
@@ -217,6 +246,7 @@ def _origin(text: str | None) -> Origin:
 
 
 def _show(readings: Sequence[Reading], names: Mapping[str, str], loaded_radius: float) -> None:
+    from toewright.model.import_names import alike
     from toewright.model.import_report import sanity_list
     from toewright.views.words import number
 
@@ -233,7 +263,11 @@ def _show(readings: Sequence[Reading], names: Mapping[str, str], loaded_radius: 
         ]
         columns = [f"{letter} ({reading.unit})" for letter in "xyz"]
         print_table(["point", *columns, "forward (mm)", "left (mm)", "up (mm)"], rows, right=range(1, 7))
-        renamed = [f"{label!r} is {name}" for name, (label, _) in reading.sources.items() if label in names]
+        renamed = [
+            f"{label!r} is {name}"
+            for name, (label, _) in reading.sources.items()
+            if any(alike(label, theirs) for theirs in names)
+        ]
         if renamed:
             say(f"By --names: {', '.join(renamed)}.")
     if readings[0].unused:

@@ -13,6 +13,7 @@ from toewright.core.types import FloatArray
 
 Side = Literal["left", "right"]
 Kind = Literal["double-wishbone", "strut"]
+AxleEnd = Literal["front", "rear"]
 
 POINT_NAMES: Mapping[str, tuple[str, ...]] = {
     "double-wishbone": (
@@ -120,7 +121,7 @@ class Vehicle:
         body_width: at that corner.
     """
 
-    axle: Literal["front", "rear"] = "front"
+    axle: AxleEnd = "front"
     wheelbase: float | None = None
     other_axle: Path | None = None
     cg_height: float | None = None

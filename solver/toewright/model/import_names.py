@@ -11,7 +11,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
-from toewright.model.axle import POINT_NAMES, Kind, Side
+from toewright.model.axle import POINT_NAMES, AxleEnd, Kind, Side
 from toewright.model.errors import InputError
 from toewright.model.files import read_text
 
@@ -19,9 +19,23 @@ OUR_NAMES = tuple(dict.fromkeys(name for names in POINT_NAMES.values() for name 
 """Every point name of ours."""
 
 _SIDE_WORDS: Mapping[str, Side] = {
-    "left": "left", "lh": "left", "lhs": "left",
-    "right": "right", "rh": "right", "rhs": "right",
-}  # fmt: skip
+    **dict.fromkeys(("left", "l", "lh", "lhs", "lt", "fl", "lf", "rl", "lr"), "left"),
+    **dict.fromkeys(("right", "r", "rh", "rhs", "rt", "fr", "rf", "rr"), "right"),
+}
+"""Words for the side."""
+
+_LETTERS = frozenset({"l", "r"})
+"""Of these, the ones that may mean something else (R for rear): they count only where no point lacks a word for its side."""
+
+_AXLE_WORDS: Mapping[str, AxleEnd] = {
+    **dict.fromkeys(("fl", "lf", "fr", "rf"), "front"),
+    **dict.fromkeys(("rl", "lr", "rr"), "rear"),
+}
+"""Words for the side that state the axle too."""
+
+SEVERAL = 5
+"""So many points that come with a like one (``ball joint 1``, ``ball joint 2``) make a table of several corners; arms numbered
+1 and 2 within one corner are fewer."""
 
 CLOSE = 0.6
 """Likeness of two names above which one is offered as a suggestion, never taken."""
@@ -31,6 +45,41 @@ def _words(name: str) -> frozenset[str]:
     """A name as its words: any order, any case and any separators; ``center`` is ``centre``."""
     spaced = re.sub(r"(?<=[a-z])(?=[A-Z])", " ", name)
     return frozenset(re.sub(r"[^a-z0-9]+", " ", spaced.lower()).replace("center", "centre").split())
+
+
+@dataclass(frozen=True)
+class _Label:
+    """A name in a table, taken apart.
+
+    Attributes:
+        words: what is left when the words for the side are taken away.
+        side: the side stated; None where there is none.
+        axle: the axle stated; None where there is none.
+    """
+
+    words: frozenset[str]
+    side: Side | None
+    axle: AxleEnd | None
+
+    @property
+    def twin(self) -> frozenset[str]:
+        """The words less numbers and single letters, which tell like points of several corners apart."""
+        return frozenset(word for word in self.words if len(word) > 1 and not word.isdigit())
+
+
+def _take_apart(label: str, file: str, *, letters: bool) -> _Label:
+    """A label's words and side; ``letters``: L and R alone mean the side."""
+    words = _words(label)
+    side_words = _SIDE_WORDS.keys() if letters else _SIDE_WORDS.keys() - _LETTERS
+    sides = {_SIDE_WORDS[word] for word in words & side_words}
+    axles = {_AXLE_WORDS[word] for word in words if word in _AXLE_WORDS}
+    if len(sides) > 1 and words.difference(side_words) in _OURS:
+        raise InputError(f"{file}: {label!r} states both sides; leave one of them in the name")
+    return _Label(
+        words.difference(side_words),
+        sides.pop() if len(sides) == 1 else None,
+        axles.pop() if len(axles) == 1 else None,
+    )
 
 
 _OURS = {_words(name): name for name in OUR_NAMES}
@@ -60,10 +109,16 @@ def parse_names(entries: Sequence[str]) -> dict[str, str]:
                 if theirs in OUR_NAMES:
                     hint = f"write theirs first: {ours}={theirs}"
                 raise InputError(f"--names {entry}: {ours!r} is none of our points; {hint}")
-            if found.get(theirs, ours) != ours or ours in (o for t, o in found.items() if t != theirs):
+            twins = {t for t, o in found.items() if o == ours}
+            if found.get(theirs, ours) != ours or any(not alike(theirs, twin) for twin in twins):
                 raise InputError(f"--names {entry}: {theirs} or {ours} is in two pairs; leave one")
             found[theirs] = ours
     return found
+
+
+def alike(one: str, other: str) -> bool:
+    """Do two names differ in no more than the side?"""
+    return one == other or _words(one).difference(_SIDE_WORDS) == _words(other).difference(_SIDE_WORDS)
 
 
 def _pairs_of_file(path: Path) -> list[tuple[str, str]]:
@@ -98,58 +153,112 @@ class Matched:
         kind: corner kind.
         rows: for each side found, our point name to row; the side is None where neither names nor options state it.
         unused: rows that are none of our points.
+        axle: the axle that the names state; None where they state none.
     """
 
     kind: Kind
     rows: Mapping[Side | None, Mapping[str, int]]
     unused: tuple[int, ...]
+    axle: AxleEnd | None = None
 
 
 def match_names(
     labels: Sequence[str], names: Mapping[str, str], kind: str | None, side: str | None, file: str
 ) -> Matched:
-    """Find our points among a table's names; words for the side in a name (left, LH, ...) are heeded.
+    """Find our points among a table's names; words for the side in a name (left, LH, L, FL, ...) are heeded.
 
     Args:
         labels: names in the table, one a row.
-        names: theirs to ours; these come before any likeness.
+        names: theirs to ours; these come before any likeness. One pair serves both sides where the names differ in the side only.
         kind: "double-wishbone" or "strut"; None to find it.
         side: the corner that is wanted; None for all that are there.
         file: name for messages.
 
     Raises:
-        InputError: for a name map that does not fit, missing points, a point that comes twice, names that contradict the side.
+        InputError: for a name map that does not fit, missing points, a point that comes twice, names that contradict the side, a
+            table of several corners whose names do not say which is which.
     """
-    absent = [theirs for theirs in names if theirs not in labels]
+    absent = [theirs for theirs in names if not any(alike(theirs, label) for label in labels)]
     if absent:
         close = difflib.get_close_matches(absent[0], labels, n=1, cutoff=CLOSE)
         hint = f"did you mean {close[0]!r}?" if close else f"the table has {', '.join(labels)}"
         raise InputError(f"{file}: --names {absent[0]}={names[absent[0]]}: there is no such point; {hint}")
-    rows: dict[Side | None, dict[str, int]] = {}
-    unused = []
-    for row, label in enumerate(labels):
-        words = _words(label)
-        sides = {_SIDE_WORDS[word] for word in words if word in _SIDE_WORDS}
-        stated = next(iter(sides)) if len(sides) == 1 else None
-        ours = names.get(label) or _OURS.get(words.difference(_SIDE_WORDS))
-        if ours is None:
-            unused.append(row)
-            continue
-        group = rows.setdefault(stated, {})
-        if ours in group:
-            raise InputError(
-                f"{file}: {ours} comes from both {labels[group[ours]]!r} and {label!r}; remove one, or write the side in the names"
-            )
-        group[ours] = row
+    found = _group(labels, names, file, letters=True)
+    if None in found.rows and len(found.rows) > 1:
+        found = _group(labels, names, file, letters=False)
+    apart, rows, unused = found.apart, found.rows, found.unused
+    axles = {apart[row].axle for group in rows.values() for row in group.values()} - {None}
+    if len(axles) > 1:
+        raise InputError(f"{file}: the names state front and rear; leave the rows of one axle")
     rows = _share_out(rows, side, labels, file)
+    if None in rows:
+        _refuse_two_corners(rows[None], unused, labels, apart, file)
     chosen = _kind(kind, rows, file)
     for which, group in rows.items():
         missing = [name for name in POINT_NAMES[chosen] if name not in group]
         if missing:
-            raise InputError(_missing_sentence(missing, [labels[row] for row in unused], chosen, which, file))
+            unknown = [(labels[row], apart[row]) for row in unused]
+            raise InputError(_missing_sentence(missing, unknown, chosen, which, file))
     wanted = {which: {name: group[name] for name in POINT_NAMES[chosen]} for which, group in rows.items()}
     taken = {row for group in wanted.values() for row in group.values()}
-    return Matched(chosen, wanted, tuple(row for row in range(len(labels)) if row not in taken))
+    left = tuple(row for row in range(len(labels)) if row not in taken)
+    return Matched(chosen, wanted, left, next(iter(axles), None))
+
+
+@dataclass(frozen=True)
+class _Groups:
+    """The table's names taken apart, our points by side stated, and the rows that are none of ours."""
+
+    apart: list[_Label]
+    rows: dict[Side | None, dict[str, int]]
+    unused: list[int]
+
+
+def _group(labels: Sequence[str], names: Mapping[str, str], file: str, *, letters: bool) -> _Groups:
+    apart = [_take_apart(label, file, letters=letters) for label in labels]
+    mapped = {_take_apart(theirs, file, letters=letters).words: ours for theirs, ours in names.items()}
+    rows: dict[Side | None, dict[str, int]] = {}
+    unused = []
+    for row, label in enumerate(labels):
+        words = apart[row].words
+        ours = names.get(label) or mapped.get(words) or _OURS.get(words)
+        if ours is None:
+            unused.append(row)
+            continue
+        group = rows.setdefault(apart[row].side, {})
+        if ours in group:
+            both = {apart[group[ours]].axle, apart[row].axle} == {"front", "rear"}
+            remedy = "leave the rows of one axle" if both else "remove one, or write the side in the names"
+            raise InputError(f"{file}: {ours} comes from both {labels[group[ours]]!r} and {label!r}; {remedy}")
+        group[ours] = row
+    return _Groups(apart, rows, unused)
+
+
+def _refuse_two_corners(
+    taken: Mapping[str, int], unused: Sequence[int], labels: Sequence[str], apart: Sequence[_Label], file: str
+) -> None:
+    """Refuse a table that holds a like row for many of the points taken: which corner is which can't be told."""
+    among = [*taken.values(), *unused]
+    pairs = _like_rows([(labels[row], apart[row]) for row in among])
+    if len(pairs) >= SEVERAL:
+        raise InputError(_two_corners_sentence(pairs[0], file))
+
+
+def _like_rows(rows: Sequence[tuple[str, _Label]]) -> list[list[str]]:
+    """Labels that differ by numbers and single letters only, in groups of two to four as the corners of a car."""
+    groups: dict[frozenset[str], list[str]] = {}
+    for label, like in rows:
+        if like.side is None and like.twin:
+            groups.setdefault(like.twin, []).append(label)
+    return [group for group in groups.values() if 2 <= len(group) <= 4]
+
+
+def _two_corners_sentence(examples: Sequence[str], file: str) -> str:
+    shown = " and ".join(repr(example) for example in examples)
+    return (
+        f"{file}: the table seems to hold more than one corner ({shown}): write left or right in the names (or L and R), "
+        "or leave the rows of one corner"
+    )
 
 
 def _share_out(
@@ -196,14 +305,27 @@ def _kind(kind: str | None, rows: Mapping[Side | None, Mapping[str, int]], file:
     return "strut" if kind == "strut" else "double-wishbone"
 
 
-def _missing_sentence(missing: Sequence[str], unknown: Sequence[str], kind: str, side: str | None, file: str) -> str:
-    which = f"the {side} {kind} corner" if side else f"a {kind} corner"
-    pairs = []
+def _missing_sentence(
+    missing: Sequence[str], unknown: Sequence[tuple[str, _Label]], kind: str, which: str | None, file: str
+) -> str:
+    """What was not found, and how to name it; never advice that takes one corner's rows out of a table of several."""
+    several = _like_rows(unknown)
+    if len(several) >= SEVERAL:
+        return _two_corners_sentence(several[0], file)
+    place = f"the {which} {kind} corner" if which else f"a {kind} corner"
+    pairs, both = [], False
+    sided = {like.words for _, like in unknown if like.side == "left"} & {
+        like.words for _, like in unknown if like.side == "right"
+    }
+    plain = {" ".join(sorted(like.words)): (label, like) for label, like in unknown}
     for name in missing:
-        close = difflib.get_close_matches(name, [u.lower() for u in unknown], n=1, cutoff=CLOSE)
-        theirs = next((u for u in unknown if close and u.lower() == close[0]), None)
-        if theirs is not None:
-            pairs.append(f"--names {shlex.quote(f'{theirs}={name}')}")
+        close = difflib.get_close_matches(" ".join(sorted(_words(name))), plain, n=1, cutoff=CLOSE)
+        if close:
+            label, like = plain[close[0]]
+            both = both or like.words in sided
+            pairs.append(f"--names {shlex.quote(f'{label}={name}')}")
     remedy = f"if they are these, add {' '.join(pairs)}" if pairs else "name them with --names theirs=ours"
-    rest = f" (not understood: {', '.join(unknown)})" if unknown else ""
-    return f"{file}: {', '.join(missing)} not found for {which}{rest}; {remedy if unknown else 'add the missing rows'}"
+    if both or (not pairs and sided):
+        remedy += " (one pair serves both sides)"
+    rest = f" (not understood: {', '.join(label for label, _ in unknown)})" if unknown else ""
+    return f"{file}: {', '.join(missing)} not found for {place}{rest}; {remedy if unknown else 'add the missing rows'}"

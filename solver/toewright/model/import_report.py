@@ -10,8 +10,12 @@ import numpy as np
 from toewright.model.axle import Corner
 from toewright.model.importing import Reading
 
-STEEP = 20.0
-"""An arm steeper than this (deg) was hardly taken at the design height."""
+STEEP = 10.0
+"""An arm steeper than this (deg) may not have been taken at the design height."""
+
+
+HANGING = 5.0
+"""Two wishbones that fall outward by more than this (deg) on average are those of a wheel that hangs."""
 
 
 @dataclass(frozen=True)
@@ -56,12 +60,16 @@ def _of_corner(reading: Reading, loaded_radius: float) -> list[Sanity]:
         Sanity("axes of the table", f"{reading.axes.text}, {handed}", not reading.axes.mirrors),
         *_order(corner),
     ]
-    for arm in ("upper", "lower"):
-        if f"{arm}_ball_joint" in points:
-            angle = _slope(corner, arm)
-            rows.append(
-                Sanity(f"{arm} arm near level, not at full droop", f"{_tilt(angle)} outward", abs(angle) <= STEEP)
-            )
+    slopes = {arm: _slope(corner, arm) for arm in ("upper", "lower") if f"{arm}_ball_joint" in points}
+    hanging = len(slopes) == 2 and sum(slopes.values()) < -2.0 * HANGING
+    rows += [
+        Sanity(
+            f"{arm} arm near level, not at full droop",
+            f"{_tilt(angle)} outward",
+            abs(angle) <= STEEP and not (hanging and angle < 0.0),
+        )
+        for arm, angle in slopes.items()
+    ]
     outboard = float((centre[1] - lower[1]) * corner.sign)
     rows.append(Sanity("wheel centre outboard of lower ball joint", f"{outboard:+.1f} mm", outboard > 0.0))
     return rows
@@ -82,6 +90,8 @@ def _order(corner: Corner) -> list[Sanity]:
     rise = float(points[top][2] - points["lower_ball_joint"][2])
     rows.append(Sanity(f"{top.replace('_', ' ')} above lower ball joint", f"{rise:+.1f} mm", rise > 0.0))
     rod = points["tie_rod_outer"] - points["tie_rod_inner"]
+    reach = float(rod[1] * corner.sign)
+    rows.append(Sanity("tie rod's inner joint inboard of its outer one", f"by {reach:.1f} mm", reach > 0.0))
     slope = float(np.degrees(np.arctan2(rod[2], np.hypot(rod[0], rod[1]))))
     rows.append(
         Sanity("tie rod near the rack's height", f"outer end {rod[2]:+.1f} mm, {_tilt(slope)}", abs(slope) <= 12.0)

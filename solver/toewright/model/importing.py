@@ -15,7 +15,7 @@ import numpy as np
 
 from toewright.core.types import FloatArray
 from toewright.model.axis_maps import ALL_AXIS_MAPS, AxisMap
-from toewright.model.axle import Corner, Kind, Side
+from toewright.model.axle import AxleEnd, Corner, Kind, Side
 from toewright.model.errors import InputError
 from toewright.model.frames import MM_PER
 from toewright.model.geometry_checks import LARGEST_SPREAD, SMALLEST_SPREAD
@@ -48,6 +48,7 @@ class Reading:
         origin: (3,) the car's origin in the table's columns and unit.
         sources: our point name to the table's name and (3,) numbers.
         unused: names in the table that were not taken.
+        axle: the axle that the names state; None where they state none.
         concluded: what was not given but found, in words.
     """
 
@@ -58,6 +59,7 @@ class Reading:
     sources: Mapping[str, tuple[str, FloatArray]]
     unused: tuple[str, ...]
     concluded: tuple[str, ...]
+    axle: AxleEnd | None = None
 
 
 @dataclass(frozen=True)
@@ -150,6 +152,7 @@ def conclude(
                 sources={name: (table.names[row], table.values[row]) for name, row in rows.items()},
                 unused=tuple(table.names[row] for row in matched.unused),
                 concluded=said,
+                axle=matched.axle,
             )
         )
     return tuple(readings)
@@ -205,8 +208,8 @@ def _survivors(groups: Sequence[Points], known: _Known) -> list[_Candidate]:
         for axes in ([known.axes] if known.axes is not None else ALL_AXIS_MAPS)
         for which in sides
         if all(
-            _speaks_true(vectors, axes, side, clearly=known.axes is None)
-            for vectors, side in zip(directions, which, strict=True)
+            _speaks_true(vectors, axes, side, clearly=known.axes is None) and _rod_outboard(points, axes, side)
+            for vectors, points, side in zip(directions, groups, which, strict=True)
         )
         for unit in ([known.unit] if known.unit is not None else MM_PER)
     ]
@@ -233,6 +236,12 @@ def _speaks_true(
         if clearly and not np.all(along >= CLEAR * across):
             return False
     return True
+
+
+def _rod_outboard(points: Points, axes: AxisMap, side: Side) -> bool:
+    """Is the tie rod's outer joint outboard of its inner one? A rod may lie across, so it does not tell the axes."""
+    rod = axes.matrix @ (points["tie_rod_outer"] - points["tie_rod_inner"])
+    return bool(rod[1] > 0.0) if side == "left" else bool(rod[1] < 0.0)
 
 
 def _right_place(points: Points, candidate: _Candidate, side: Side, known: _Known) -> bool:
@@ -291,7 +300,10 @@ def _road_sentence(file: str, height: float, found: _Candidate, known: _Known) -
     )
 
 
-_ORDER = "front pivots ahead of rear ones, upper above lower, ball joints outboard of their pivots, all on their side"
+_ORDER = (
+    "front pivots ahead of rear ones, upper above lower, ball joints outboard of their pivots, the tie rod's outer joint outboard of its "
+    "inner one, all on their side"
+)
 
 
 def _nothing_fits(file: str, groups: Sequence[Points], known: _Known) -> str:

@@ -120,7 +120,7 @@ def read_point_table(text: str, file: str) -> PointTable:
         if cells < 3:
             sentence = (
                 f"{file}: line {lines[0][0]} is not a name and three numbers; "
-                "separate the cells by comma, semicolon, tab or spaces"
+                "separate the cells by comma, semicolon, tab or spaces, and remove title lines above the header"
             )
         raise InputError(sentence)
     if len(readings) > 1:
@@ -219,7 +219,8 @@ def _read(rows: Sequence[tuple[int, list[str]]], word: str, decimal: str, file: 
         label, numbers = _row(cells, columns, word, decimal, file, number)
         if label in where:
             raise _UnreadableError(
-                f"{file}: line {number}: {label!r} comes a second time (first in line {where[label]}); remove one",
+                f"{file}: line {number}: {label!r} comes a second time (first in line {where[label]}); remove one, "
+                "or write the side in the names",
                 number,
             )
         where[label] = number
@@ -267,7 +268,10 @@ def _row(cells: list[str], columns: _Columns, word: str, decimal: str, file: str
         cells = [" ".join(cells[:-3]), *cells[-3:]]
     if len(cells) <= columns.last or len(cells) > most:
         wanted = "name, x, y, z are wanted" if columns.width is None else f"the header has {most}"
-        raise _UnreadableError(f"{place} has {len(cells)} cells ({word} between them) where {wanted}; correct it", line)
+        titles = ", and remove title lines above the header" if columns.width is None else ""
+        raise _UnreadableError(
+            f"{place} has {len(cells)} cells ({word} between them) where {wanted}; correct it{titles}", line
+        )
     label, numbers = cells[columns.name], [cells[i] for i in columns.xyz]
     bad = next((cell for cell in numbers if not _is_number(cell, decimal)), None)
     if bad is not None:
