@@ -94,6 +94,14 @@ def test_letters_that_mean_rear_are_no_side() -> None:
     labels = [theirs.get(name, name) for name in WISHBONE]
     matched = match_names(labels, {label: name for name, label in theirs.items()}, None, None, "t.csv")
     assert matched.rows == {None: {name: row for row, name in enumerate(WISHBONE)}}
+    for mark in ("{side}_{name}", "{name} {side}"):  # side letters before and behind, beside letters that mean rear
+        both = [mark.format(side=side, name=label) for side in "LR" for label in labels]
+        pairs = {mark.format(side="L", name=label): name for name, label in theirs.items()}
+        rows = match_names(both, pairs, None, None, "t.csv").rows
+        assert {side: list(group.values()) for side, group in rows.items()} == {
+            "left": list(range(9)),
+            "right": list(range(9, 18)),
+        }
     sided = [f"left {label}" for label in labels]
     assert list(match_names(sided, {f"left {t}": o for o, t in theirs.items()}, None, None, "t.csv").rows) == ["left"]
 

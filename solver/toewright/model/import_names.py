@@ -41,10 +41,33 @@ CLOSE = 0.6
 """Likeness of two names above which one is offered as a suggestion, never taken."""
 
 
-def _words(name: str) -> frozenset[str]:
-    """A name as its words: any order, any case and any separators; ``center`` is ``centre``."""
+def _word_list(name: str) -> list[str]:
+    """A name as its words in turn: any case and any separators; ``center`` is ``centre``."""
     spaced = re.sub(r"(?<=[a-z])(?=[A-Z])", " ", name)
-    return frozenset(re.sub(r"[^a-z0-9]+", " ", spaced.lower()).replace("center", "centre").split())
+    return re.sub(r"[^a-z0-9]+", " ", spaced.lower()).replace("center", "centre").split()
+
+
+def _words(name: str) -> frozenset[str]:
+    """A name as its words, in any order."""
+    return frozenset(_word_list(name))
+
+
+def _letter_place(labels: Sequence[str]) -> int | None:
+    """0 or -1 where every label begins or ends with L or R, and both occur: any other R in them means something else."""
+    lists = [_word_list(label) for label in labels]
+    for place in (0, -1):
+        if {words[place] if len(words) > 1 else "" for words in lists} == _LETTERS:
+            return place
+    return None
+
+
+def _mark(label: str, place: int | None) -> str:
+    """The label with the letter at that place written out."""
+    words = _word_list(label)
+    if place is None or not words or words[place] not in _LETTERS:
+        return label
+    words[place] = _SIDE_WORDS[words[place]]
+    return " ".join(words)
 
 
 @dataclass(frozen=True)
@@ -215,8 +238,9 @@ class _Groups:
 
 
 def _group(labels: Sequence[str], names: Mapping[str, str], file: str, *, letters: bool) -> _Groups:
-    apart = [_take_apart(label, file, letters=letters) for label in labels]
-    mapped = {_take_apart(theirs, file, letters=letters).words: ours for theirs, ours in names.items()}
+    place = _letter_place(labels)
+    apart = [_take_apart(_mark(label, place), file, letters=letters) for label in labels]
+    mapped = {_take_apart(_mark(theirs, place), file, letters=letters).words: ours for theirs, ours in names.items()}
     rows: dict[Side | None, dict[str, int]] = {}
     unused = []
     for row, label in enumerate(labels):
