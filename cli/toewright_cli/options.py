@@ -145,7 +145,7 @@ def parse_number(value: float | None, option: str) -> float | None:
     Raises:
         InputError: if it is not finite or out of all proportion.
     """
-    return None if value is None else _number(repr(value), option, f"{value:g}")
+    return None if value is None else _number(repr(value), option, f"{value:g}", "one finite number")
 
 
 STEEPEST_ROLL = 45.0

@@ -68,8 +68,10 @@ def ride(
     overlaid = check_plot(plot, overlay, force)
     from toewright.kinematics.riding import MOTIONS
     from toewright.kinematics.riding import ride as solve
+    from toewright.kinematics.status import state_words
     from toewright.model.errors import InputError
     from toewright.model.files import load
+    from toewright.views.words import number
     from toewright_cli.show.riding import EXPLAINED, print_ride, ride_document
     from toewright_cli.show.tables import long_table, table_document
 
@@ -97,8 +99,9 @@ def ride(
     for name in dict.fromkeys(ridden.motion.tolist()):
         part = ridden.part(name)
         if not (ridden.status[part] == 0).any():
+            why, place = state_words(ridden.status_names[part][0]), number(at_rack, 1)
             raise InputError(
-                f"{file}: none of the {name} positions can be reached at rack {at_rack:+g} mm: {ridden.status_names[part][0]}; ask for less"
+                f"{file}: none of the {name} positions can be reached at rack {place} mm: {why}; ask for less"
             )
     if out_file is not None:
         save_results(

@@ -72,6 +72,7 @@ def turn(
     check_out(out_file, force)
     overlaid = check_plot(plot, overlay, force)
     from toewright.kinematics.limits import limits
+    from toewright.kinematics.status import state_words
     from toewright.kinematics.turning import turn as solve
     from toewright.model.errors import InputError
     from toewright.model.files import load
@@ -99,7 +100,8 @@ def turn(
         else f"wheel travel {height or 0.0:+g} mm".replace("+0 ", "0 ")
     )
     if not (turned.status == 0).any():
-        raise InputError(f"{file}: no rack position can be reached at {held}: {turned.status_names[0]}; ask for less")
+        why = state_words(turned.status_names[0])
+        raise InputError(f"{file}: no rack position can be reached at {held}: {why}; ask for less")
     if out_file is not None:
         save_results(
             out_file, force, lambda: long_table(turned), lambda: table_document(axle, turned), turned.to_xarray

@@ -28,3 +28,8 @@ STOP_CAUSES = {
     "locked": "the tie rod and the steering arm come into line and the steering locks",
 }
 """Why a linkage stops, in words."""
+
+
+def state_words(status: str) -> str:
+    """A status with its meaning: ``locked, which is at or beyond the place where ...``."""
+    return f"{status}, which is {STATUS_MEANINGS[status]}"
