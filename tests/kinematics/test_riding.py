@@ -213,3 +213,26 @@ def test_limits_name_the_lock():
     rear = tw.limits(tw.load(HARDPOINTS / "marten_rear.toml"))
     assert rear.stroke is None
     assert rear.stops == ()
+
+
+@pytest.mark.parametrize("kind", ["double-wishbone", "strut"])
+@pytest.mark.parametrize("seed", range(3))
+def test_large_rolls_are_those_reached_from_upright(kind, seed):
+    # by a scan over wheel travel: the first travel from zero outward that puts both tyres on one road, or none within reach
+    axle = make_axle(scatter(kind, 12.0, seed), kind)
+    roll = np.concatenate([-np.arange(9.0, 44.0, 5.0), np.arange(7.0, 44.0, 5.0)])
+    rolled = roll_axle(axle, roll, np.full(roll.size, 20.0))
+    half = axle.left.points["wheel_centre"][1]
+    reached = 0
+    for k, angle in enumerate(roll):
+        travel = np.linspace(0.0, 1.2 * half * np.tan(np.radians(angle)), 241)
+        poses = solve_poses(design_vectors(axle), np.full(travel.size, 20.0), np.stack([-travel, travel]))
+        height = contact_on(poses, axle.wheel.loaded_radius, np.full(travel.size, angle)).height
+        gap = (height[0] - height[1])[np.cumsum(np.any(poses.status != 0, axis=0)) == 0]
+        turns = np.flatnonzero(np.diff(np.sign(gap)) != 0.0)
+        assert (rolled.status[k] == 0) == bool(turns.size), angle
+        if turns.size:
+            low, high = sorted(travel[[turns[0], turns[0] + 1]])
+            assert low <= rolled.travel[k] <= high, angle
+            reached += 1
+    assert 4 <= reached < roll.size

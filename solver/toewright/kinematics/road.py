@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 
@@ -12,7 +13,19 @@ from toewright.kinematics.design import design_vectors
 from toewright.kinematics.status import OK, OUT_OF_REACH
 from toewright.model.axle import Axle
 
-ROLL_ITERATIONS = 12
+ROLL_ITERATIONS = 30
+"""Newton takes 3 to 5; the rest is for guesses beyond reach, which are halved back."""
+
+ROLL_SHORTEST = 0.1
+"""Where a guess beyond reach is this near (mm) to a travel within, there is no road."""
+
+ROLL_DIRECT = 5.0
+"""Up to this roll (deg) the travel of wheels that move straight up is guess enough; beyond, more than one travel can stand both
+tyres on the road, and the one that the car rolls into from upright is walked to."""
+
+ROLL_STRIDE = 1.0
+"""Stride (deg) of that walk."""
+
 ROLL_TOLERANCE = 1e-10
 """Largest distance (mm) of a tyre from the common road where the search ends."""
 
@@ -104,7 +117,8 @@ class Rolled:
 def roll_axle(axle: Axle, roll: FloatArray, rack: FloatArray, *, travel_at: str = "wheel-centre") -> Rolled:
     """Roll an axle: equal and opposite wheel travels that put both tyres on one road.
 
-    Newton on the distance of the two tyres from a common road, with the exact slope of each contact.
+    Newton on the distance of the two tyres from a common road, with the exact slope of each contact; large angles in strides from
+    upright.
 
     Args:
         axle: the axle.
@@ -112,22 +126,59 @@ def roll_axle(axle: Axle, roll: FloatArray, rack: FloatArray, *, travel_at: str 
         rack: (M,) mm.
         travel_at: what the wheel travel is the height of.
     """
-    designs = design_vectors(axle)
-    radius = axle.wheel.loaded_radius
     half = 0.5 * float(axle.left.points["wheel_centre"][1] - axle.right.points["wheel_centre"][1])
-    travel = half * np.tan(np.radians(roll))
-    done = np.zeros(roll.size, dtype=bool)
+    found = _balance(axle, roll, rack, half * np.tan(np.radians(roll)), travel_at)
+    far = np.flatnonzero(~found.done | (np.abs(roll) > ROLL_DIRECT))
+    if far.size:
+        walked = _walk_roll(axle, roll[far], rack[far], travel_at)
+        start = found.travel.copy()
+        start[far] = walked.travel
+        found = _balance(axle, roll, rack, start, travel_at)
+        found.done[far] &= walked.done
+        found.why[far] = walked.why
+    status = np.where(found.done, np.int8(OK), found.why)
+    return Rolled(found.travel, found.by_roll, found.poses, status)
+
+
+@dataclass(frozen=True)
+class _Balanced:
+    """Axles on a road (M,); ``why`` is the status of the last pose tried that was beyond reach."""
+
+    travel: FloatArray
+    by_roll: FloatArray
+    poses: PoseList
+    done: np.ndarray[Any, np.dtype[np.bool_]]
+    why: StatusArray
+
+
+def _balance(axle: Axle, roll: FloatArray, rack: FloatArray, travel: FloatArray, travel_at: str) -> _Balanced:
+    """Newton from a guess of the right wheel's travel (M,) on the distance of the two tyres from one road."""
+    designs, radius = design_vectors(axle), axle.wheel.loaded_radius
+    near = np.zeros_like(travel)  # within reach, unless the rack itself is beyond
+    why = np.full(travel.size, OUT_OF_REACH, dtype=np.int8)
     for _ in range(ROLL_ITERATIONS):
         poses = solve_poses(designs, np.stack([rack, rack]), np.stack([-travel, travel]), travel_at=travel_at)
         contact = contact_on(poses, radius, roll)
         gap = contact.height[0] - contact.height[1]
         slope = -contact.height_slope[0] - contact.height_slope[1]
-        done = np.abs(gap) < ROLL_TOLERANCE
-        if np.all(done | np.isnan(gap)):
+        done, beyond = np.abs(gap) < ROLL_TOLERANCE, np.isnan(gap)
+        why = np.where(beyond, np.max(poses.status, axis=0), why).astype(np.int8)
+        if np.all(done | (beyond & (np.abs(travel - near) < ROLL_SHORTEST))):
             break
-        travel = np.where(done | np.isnan(gap), travel, travel - gap / slope)
-    lost = ~done
-    status = np.max(poses.status, axis=0).astype(np.int8)
-    status[lost & (status == OK)] = OUT_OF_REACH
+        near = np.where(beyond, near, travel)
+        travel = np.where(done, travel, np.where(beyond, 0.5 * (travel + near), travel - gap / slope))
     by_roll = -np.radians(1.0) * (contact.height_by_roll[0] - contact.height_by_roll[1]) / slope
-    return Rolled(travel, by_roll, poses, status)
+    return _Balanced(travel, by_roll, poses, done, why)
+
+
+def _walk_roll(axle: Axle, roll: FloatArray, rack: FloatArray, travel_at: str) -> _Balanced:
+    """Roll from upright in strides; where a stride finds no road the walk has ended and ``done`` is False."""
+    steps = max(1, int(np.ceil(np.max(np.abs(roll)) / ROLL_STRIDE)))
+    found = _balance(axle, 0.0 * roll, rack, 0.0 * roll, travel_at)
+    alive, why = found.done, found.why
+    for step in range(1, steps + 1):
+        guess = np.where(alive, found.travel + found.by_roll * roll / steps, 0.0)
+        found = _balance(axle, roll * (step / steps), rack, guess, travel_at)
+        why = np.where(alive, found.why, why)
+        alive = alive & found.done
+    return _Balanced(found.travel, found.by_roll, found.poses, alive, why)
